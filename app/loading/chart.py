@@ -1,0 +1,122 @@
+"""The loading chart on the wall, and the weights that can be made at all."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from functools import lru_cache
+from math import gcd, lcm
+
+from app.loading.equipment import Equipment, Plate, Stack
+
+MOST_SUMS = 2_000_000
+
+
+class TooManyWeights(ValueError):  # noqa: N818 - says what is wrong with the plates
+    """The plates make more different weights than can be listed."""
+
+
+def chart_stack(equipment: Equipment, target: Fraction) -> Stack | None:
+    """As many of the heaviest plate as still lets the rest be made, then the next; heaviest inside.
+
+    That is the greatest vector of counts in dictionary order among those that make the weight from the
+    stock. ``None`` when no stack of the stock makes it, or when this one does not fit the sleeve.
+    """
+    counts = _greatest(equipment, _share(equipment, target))
+    if counts is None:
+        return None
+    plates = _heaviest_first(equipment)
+    stack = tuple(plate.face for plate, count in zip(plates, counts, strict=True) for _ in range(count))
+    room = equipment.room_mm
+    if room is not None:
+        thickness = [
+            (plate.thickness_mm or Fraction(0)) * count for plate, count in zip(plates, counts, strict=True)
+        ]
+        if sum(thickness, Fraction(0)) > room:
+            return None
+    return stack
+
+
+def _heaviest_first(equipment: Equipment) -> list[Plate]:
+    return sorted(equipment.plates, key=lambda plate: -plate.face)
+
+
+def _share(equipment: Equipment, target: Fraction) -> Fraction:
+    return (target - equipment.base_mass) / equipment.implement.ends
+
+
+def _greatest(equipment: Equipment, share: Fraction) -> list[int] | None:
+    """Depth first, most plates first; what has failed once is not tried again."""
+    if share < 0:
+        return None
+    scale, faces, counts = _whole(equipment)
+    left = share * scale
+    if left.denominator != 1:
+        return None
+    failed: set[tuple[int, int]] = set()
+    most = [0] * (len(faces) + 1)
+    step = [0] * (len(faces) + 1)
+    for kind in reversed(range(len(faces))):
+        most[kind] = most[kind + 1] + faces[kind] * counts[kind]
+        step[kind] = gcd(step[kind + 1], faces[kind] if counts[kind] else 0)
+
+    def fill(kind: int, rest: int) -> list[int] | None:
+        if rest == 0:
+            return [0] * (len(faces) - kind)
+        if rest > most[kind] or rest % step[kind] or (kind, rest) in failed:
+            return None
+        for count in range(min(counts[kind], rest // faces[kind]), -1, -1):
+            tail = fill(kind + 1, rest - count * faces[kind])
+            if tail is not None:
+                return [count, *tail]
+        failed.add((kind, rest))
+        if len(failed) > MOST_SUMS:
+            raise TooManyWeights("These plates make more different weights than can be searched.")
+        return None
+
+    return fill(0, left.numerator)
+
+
+@lru_cache(maxsize=64)
+def _whole(equipment: Equipment) -> tuple[int, list[int], list[int]]:
+    """Faces as whole numbers of one common step, heaviest first, and the pieces for one end."""
+    plates = _heaviest_first(equipment)
+    scale = lcm(*(plate.face.denominator for plate in plates))
+    faces = [int(plate.face * scale) for plate in plates]
+    return scale, faces, [equipment.pieces_per_end(plate) for plate in plates]
+
+
+def loadable(equipment: Equipment, target: Fraction) -> bool:
+    """Whether some stack of the stock makes the weight and fits the sleeve."""
+    return target in _weights(equipment)
+
+
+def nearest(equipment: Equipment, target: Fraction) -> tuple[Fraction | None, Fraction | None]:
+    """The nearest weights below and above that can be made; the target itself counts for neither."""
+    weights = _weights(equipment)
+    below = max((weight for weight in weights if weight < target), default=None)
+    above = min((weight for weight in weights if weight > target), default=None)
+    return below, above
+
+
+@lru_cache(maxsize=64)
+def _weights(equipment: Equipment) -> frozenset[Fraction]:
+    """Every weight that can be made, bare bar included."""
+    scale, faces, counts = _whole(equipment)
+    room = equipment.room_mm
+    plates = _heaviest_first(equipment)
+    thickness = [plate.thickness_mm or Fraction(0) if room is not None else Fraction(0) for plate in plates]
+    thinnest = {0: Fraction(0)}  # thinnest[m] = least millimetres that make the mass m at one end
+    for face, count, width in zip(faces, counts, thickness, strict=True):
+        for mass, taken in list(thinnest.items()):
+            for pieces in range(1, count + 1):
+                made, wide = mass + pieces * face, taken + pieces * width
+                if made not in thinnest or thinnest[made] > wide:
+                    thinnest[made] = wide
+        if len(thinnest) > MOST_SUMS:
+            raise TooManyWeights("These plates make more different weights than can be searched.")
+    ends = equipment.implement.ends
+    return frozenset(
+        equipment.base_mass + ends * Fraction(mass, scale)
+        for mass, wide in thinnest.items()
+        if room is None or wide <= room
+    )

@@ -1,0 +1,109 @@
+"""Everything the engines need of one request, prepared once."""
+
+from __future__ import annotations
+
+from collections import Counter
+from dataclasses import dataclass
+from fractions import Fraction
+
+import numpy as np
+
+from app.loading.equipment import Stack
+from app.planning.answer import ChartFigures
+from app.planning.checking import check_request
+from app.planning.compose import chart_figures, chart_stacks
+from app.planning.counts import Ints, count_vectors
+from app.planning.kit import Kit, make_kit
+from app.planning.prices import Numbers, Prices, make_prices
+from app.planning.request import Measure, PlanRequest
+from app.planning.smaller import Alphabet
+from app.planning.weights import refuse_weight, shares
+
+
+@dataclass(frozen=True)
+class Problem:
+    """A request in whole numbers. ``vectors[share]`` are the allowed count vectors; ``chart_counts[share]``
+    the chart's, where it has a stack; ``start`` is one row of counts."""
+
+    request: PlanRequest
+    kit: Kit
+    vectors: dict[int, Ints]
+    charts: tuple[Stack | None, ...]
+    chart: ChartFigures | None
+    chart_counts: dict[int, Ints]
+    start: Ints
+    prices: Prices
+    alphabet: Alphabet
+
+    @property
+    def distinct(self) -> list[int]:
+        """The different shares, ascending."""
+        return sorted(self.vectors)
+
+    @property
+    def attempts(self) -> tuple[int, ...]:
+        """For the start (0) and every attempt, 0 or 1 + the place of its share among the different ones."""
+        place = {share: 1 + index for index, share in enumerate(self.distinct)}
+        return (0, *(place[share] for share in self.kit.shares))
+
+    def nearness(self, share: int, counts: Ints) -> Numbers:
+        """How many plates each row of counts would have to swap to be the chart's: the last tie-break.
+
+        Plates are counted whatever their order, so that every engine can add it up.
+        """
+        chart = self.chart_counts.get(share)
+        if chart is None:
+            return np.zeros(len(counts), self.prices.dtype)
+        return np.asarray(np.abs(counts - chart).sum(axis=1).astype(self.prices.dtype))
+
+    def limit(self) -> int | None:
+        """The asked limit in whole steps of the measure; ``None`` when there is none to keep."""
+        limit = self.request.limit
+        asked = self._chart_worst() if isinstance(limit, str) else limit
+        return None if asked is None else int(asked // self.prices.worth)
+
+    def _chart_worst(self) -> Fraction | None:
+        if self.chart is None:
+            return None
+        worst = self.chart.worst
+        by = {Measure.PLATES: Fraction(worst.plates), Measure.MASS: worst.mass, Measure.TIME: worst.time_s}
+        return by[self.request.measure]
+
+    def stacks(self, rows: Ints) -> list[Stack]:
+        """Rows of digits as stacks of faces."""
+        return [tuple(self.kit.plates[digit - 1].face for digit in row if digit) for row in rows.tolist()]
+
+
+def prepare(request: PlanRequest) -> Problem:
+    """Check the request and list the count vectors. Raises :class:`Refusal` for what cannot be made."""
+    check_request(request)
+    kit = make_kit(request, shares(request.equipment, request.targets))
+    vectors = count_vectors(kit, request.extra_plates)
+    for target, share in zip(request.targets, kit.shares, strict=True):
+        if not len(vectors[share]):
+            raise refuse_weight(request.equipment, target)
+    charts = chart_stacks(request)
+    start = np.bincount(kit.start, minlength=kit.kinds)[None, :].astype(np.int64)
+    chart_counts = _chart_counts(kit, charts)
+    rows = [start, *vectors.values()]
+    longest = np.max(np.concatenate([*rows, *(row[None, :] for row in chart_counts.values())]), axis=0)
+    return Problem(
+        request=request,
+        kit=kit,
+        vectors=vectors,
+        charts=tuple(charts),
+        chart=chart_figures(request, charts),
+        chart_counts=chart_counts,
+        start=start,
+        prices=make_prices(request, kit, longest),
+        alphabet=Alphabet.of(kit.kinds, max(int(row.sum(axis=1).max()) for row in rows)),
+    )
+
+
+def _chart_counts(kit: Kit, charts: list[Stack | None]) -> dict[int, Ints]:
+    found = {}
+    for share, stack in zip(kit.shares, charts, strict=True):
+        if stack is not None and share not in found:
+            pieces = Counter(stack)
+            found[share] = np.array([pieces[plate.face] for plate in kit.plates], np.int64)
+    return found
