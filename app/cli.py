@@ -1,5 +1,159 @@
-"""platewright …"""
+"""``platewright demo``, ``platewright serve``, ``platewright plan``: what is typed at a terminal."""
+
+from __future__ import annotations
+
+import argparse
+import logging
+import socket
+import sqlite3
+import sys
+from collections.abc import Sequence
+from pathlib import Path
+
+import uvicorn
+
+from app.desk.demo import make_demo
+from app.desk.entry import Desk
+from app.desk.hub import QuietHub
+from app.desk.plan_text import answers
+from app.desk.roster import meet_ids, pictures
+from app.store.engine import make_engine, reading
+from app.store.migrate import upgrade
+from app.web.house import PROJECT
+from app.web.main import create_app, utc_now
+
+GRACE_S = 2  # an open stream would keep the server alive; after this it is ended
 
 
-def main() -> None:
-    raise SystemExit(0)
+def main(argv: Sequence[str] | None = None) -> None:
+    """Run one command; exit status 2 when it could not be done as asked."""
+    chosen = _parser().parse_args(argv)
+    sys.exit(chosen.run(chosen))
+
+
+def _parser() -> argparse.ArgumentParser:
+    parser = argparse.ArgumentParser(
+        prog="platewright",
+        description="Sequences the plates on a lifting-meet day: what comes off, what goes on.",
+    )
+    commands = parser.add_subparsers(required=True, metavar="COMMAND")
+    demo = commands.add_parser("demo", help="set up an invented meet and serve it")
+    _serving(demo, "platewright-demo")
+    demo.set_defaults(run=_demo)
+    serve = commands.add_parser("serve", help="serve a real meet from a data folder")
+    _serving(serve, "platewright-data")
+    serve.set_defaults(run=_serve)
+    plan = commands.add_parser("plan", help="answer a planner's request: one JSON object, or one a line")
+    plan.add_argument("file", metavar="FILE", help="the request, or - for standard input")
+    plan.set_defaults(run=_plan)
+    return parser
+
+
+def _serving(parser: argparse.ArgumentParser, folder: str) -> None:
+    parser.add_argument(
+        "--host", default="127.0.0.1", help="the address to listen on (default: this machine only)"
+    )
+    parser.add_argument("--port", type=int, default=8420, help="the port (default: 8420)")
+    parser.add_argument(
+        "--data",
+        type=Path,
+        default=Path.home() / folder,
+        metavar="FOLDER",
+        help=f"where the meet is kept (~/{folder})",
+    )
+
+
+def _demo(chosen: argparse.Namespace) -> int:
+    return _run(chosen, demo=True)
+
+
+def _serve(chosen: argparse.Namespace) -> int:
+    return _run(chosen, demo=False)
+
+
+def _run(chosen: argparse.Namespace, *, demo: bool) -> int:
+    trouble = _trouble_with_port(chosen.host, chosen.port)
+    if trouble:
+        return _fail(trouble)
+    database = chosen.data.expanduser().resolve() / "meet.db"
+    try:
+        database.parent.mkdir(parents=True, exist_ok=True)
+        url = f"sqlite:///{database}"
+        upgrade(url)
+        desk = Desk(make_engine(url), QuietHub(), utc_now)
+        if demo:
+            make_demo(desk, PROJECT / "demo_meet")
+    except (OSError, sqlite3.Error) as error:
+        return _fail(
+            f"The data folder {chosen.data} cannot be used: {error}. Choose another with --data FOLDER."
+        )
+    _say_addresses(desk, chosen.host, chosen.port, database.parent)
+    desk.engine.dispose()
+    logging.getLogger("alembic").setLevel(logging.WARNING)
+    logging.basicConfig(level=logging.INFO, format="%(asctime)s %(name)s %(levelname)s %(message)s")
+    uvicorn.run(
+        create_app(url),
+        host=chosen.host,
+        port=chosen.port,
+        timeout_graceful_shutdown=GRACE_S,
+        log_level="warning",
+    )
+    return 0
+
+
+def _trouble_with_port(host: str, port: int) -> str:
+    """Why this address cannot be listened on; "" when it can."""
+    if not 0 < port < 65536:
+        return f"{port} is not a port. Choose one from 1024 to 65535 with --port."
+    family = socket.AF_INET6 if ":" in host else socket.AF_INET
+    with socket.socket(family) as probe:
+        probe.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
+        try:
+            probe.bind((host, port))
+        except OSError as error:
+            if error.errno in (98, 48, 10048):
+                return (
+                    f"Port {port} is taken: another program, perhaps another Platewright, listens there. "
+                    f"Stop it, or choose another port: --port {port + 1}."
+                )
+            return f"Cannot listen on {host}, port {port}: {error.strerror}. Choose others with --host and --port."
+    return ""
+
+
+def _say_addresses(desk: Desk, host: str, port: int, folder: Path) -> None:
+    base = f"http://{'127.0.0.1' if host in ('0.0.0.0', '::') else host}:{port}"  # noqa: S104 - compared, not bound
+    lines = [f"Platewright keeps its meet in {folder}", f"  Start           {base}/"]
+    with reading(desk.engine) as session:
+        for meet_id in meet_ids(session):
+            seen = pictures(session, meet_id)
+            lines.append(f"  Roster          {base}/meets/{meet_id}/roster")
+            for now in seen:
+                lines.append(f"  {now.platform}")
+                lines += [
+                    f"    {title:<13} {base}/platforms/{now.platform_id}/{path}"
+                    for title, path in (
+                        ("Table", "table"),
+                        ("Crew", "crew"),
+                        ("Cards", "cards"),
+                        ("Equipment", "equipment"),
+                    )
+                ]
+    lines.append("Stop with Ctrl+C. Nothing is lost: everything entered is on the disk already.")
+    print("\n".join(lines), flush=True)
+
+
+def _plan(chosen: argparse.Namespace) -> int:
+    try:
+        text = sys.stdin.read() if chosen.file == "-" else Path(chosen.file).read_text(encoding="utf-8")
+    except (OSError, UnicodeDecodeError) as error:
+        return _fail(f"{chosen.file} cannot be read: {error}")
+    status = 0
+    for line, good in answers(text):
+        print(line, flush=True)
+        status = status if good else 2
+    return status
+
+
+def _fail(sentence: str) -> int:
+    print(sentence, file=sys.stderr)
+    return 2

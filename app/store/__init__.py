@@ -1,0 +1,1 @@
+"""Tables, queries, the journal. Rows stay in here: what leaves is frozen dataclasses of the pure rooms."""

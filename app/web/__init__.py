@@ -1,0 +1,1 @@
+"""Pages, forms and live updates. Translates; decides nothing."""

@@ -211,7 +211,7 @@ def _words(end: EndView) -> str:
 # Rows of plates to take off or put on.
 
 ROW_LINE, ROW_GAP, TOKEN_GAP = 100, 14, 46  # units: one line, between lines, between two plates
-NUMBER_SIZE = 132  # its capitals fill 88 of a line's 100 units
+NUMBER_SIZE = 143  # its figures fill 96 of a line's 100 units
 RIM_STRETCH, RIM_LEAST, RIM_TO_NUMBER = 0.62, 9, 12
 
 
@@ -297,7 +297,7 @@ class FitText:
 
 def fit_text(text: str) -> FitText:
     """A number or a few capitals, to be shown as large as their place allows."""
-    return FitText(text, width=max(round(width_em(text) * 100), 1), height=72, baseline=69, size=100)
+    return FitText(text, width=max(round(width_em(text) * 100), 1), height=70, baseline=68, size=100)
 
 
 # A plate inside a line of text: its rim in a box of 16 by 46 units.

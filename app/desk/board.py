@@ -1,0 +1,211 @@
+"""What the pages read: one platform at one revision, its order, its plan step by step."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any
+
+from app.desk.entry import Desk
+from app.desk.settle import must_ask, plan_for
+from app.loading.change import HandList, hand_list
+from app.loading.chart import chart_stack, loadable
+from app.loading.mass import parse_mass
+from app.loading.equipment import Access, Equipment, Stack
+from app.meet.horizon import Programme
+from app.meet.model import Flight, Lift, Lifter, Result
+from app.meet.order import Turn, without_opener
+from app.meet.platform import Condition, up_next
+from app.store.engine import reading
+from app.store.journal import last_undoable
+from app.store.picture import Picture, key, picture, to_stack
+
+
+@dataclass(frozen=True, slots=True)
+class Step:
+    """One turn and its load. ``stack`` is None when the weight cannot be made; ``before`` None: bar unknown."""
+
+    turn: Turn
+    before: Stack | None
+    stack: Stack | None
+
+    @property
+    def hands(self) -> HandList | None:
+        """What comes off and what goes on."""
+        if self.stack is None:
+            return None
+        return hand_list(self.before or (), self.stack, Access.OUTER_END)
+
+
+@dataclass(frozen=True, slots=True)
+class Undoable:
+    """The entry that undo would take back."""
+
+    id: int
+    what: str
+
+
+@dataclass(frozen=True, slots=True)
+class Board:
+    """A platform as the pages show it, looking at one flight and lift (``here``: it is the one lifting)."""
+
+    now: Picture
+    flight: Flight | None
+    lift: Lift | None
+    here: bool
+    order: tuple[Turn, ...]
+    steps: tuple[Step, ...]
+    up: Turn | None
+    ask: bool
+    no_opener: tuple[Lifter, ...]
+    undo: Undoable | None
+
+    @property
+    def programme(self) -> Programme | None:
+        """The session looked at."""
+        return None if self.lift is None else self.now.programme(self.lift.id)
+
+    @property
+    def equipment(self) -> Equipment | None:
+        """What the lift looked at is loaded with."""
+        return None if self.lift is None else self.now.equipment(self.lift.id)
+
+
+def board(desk: Desk, platform_id: int, flight_id: int | None = None, lift_id: int | None = None) -> Board:
+    """Read a platform, looking at a flight and lift, or at those that are lifting."""
+    with reading(desk.engine) as session:
+        now = picture(session, platform_id)
+        entry = last_undoable(session, now.meet_id, platform_id)
+        undo = Undoable(key(entry), entry.what) if entry else None
+    flight, lift = _looked_at(now, flight_id, lift_id)
+    if flight is None or lift is None:
+        return Board(now, flight, lift, False, (), (), None, False, (), undo)
+    programme, equipment = now.programme(lift.id), now.equipment(lift.id)
+    order = programme.order(flight.id, lift.id)
+    here = (now.flight_id, now.lift_id) == (flight.id, lift.id)
+    return Board(
+        now=now,
+        flight=flight,
+        lift=lift,
+        here=here,
+        order=order,
+        steps=tuple(
+            _live_steps(now, order, equipment) if here else _fresh_steps(now, order, equipment, lift)
+        ),
+        up=up_next(now.bar, order) if here else None,
+        ask=here and must_ask(now.bar, order, equipment),
+        no_opener=without_opener(programme.of_flight(flight.id), programme.of_lift(lift.id)),
+        undo=undo,
+    )
+
+
+def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tuple[Flight | None, Lift | None]:
+    """The flight and lift asked for, if they go together; else those on the platform; else the first."""
+    for wanted in ((flight_id, lift_id), (now.flight_id, now.lift_id)):
+        for _, _, programme in now.sessions:
+            flight = next((one for one in programme.flights if one.id == wanted[0]), None)
+            lift = next((one for one in programme.lifts if one.id == wanted[1]), None)
+            if flight is not None and lift is not None:
+                return flight, lift
+    for _, _, programme in now.sessions:
+        if programme.flights and programme.lifts:
+            return programme.flights[0], programme.lifts[0]
+    return None, None
+
+
+def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment) -> Iterator[Step]:
+    """The steps of the lift that is on: the change in hand first, then the stored plan, each from the one before."""
+    stacks = {step["attempt"]: (parse_mass(step["weight"]), to_stack(step["stack"])) for step in _stored(now)}
+    hand = now.bar.hand
+    carries = now.bar.carries
+    if hand is not None and not must_ask(now.bar, order, equipment):
+        turn = up_next(now.bar, order)
+        if turn is not None:
+            yield Step(turn, hand.before, hand.stack)
+            carries = hand.stack
+    for turn in order:
+        if (
+            hand is not None
+            and turn.attempt.id == hand.attempt_id
+            and not must_ask(now.bar, order, equipment)
+        ):
+            continue
+        weight, stack = stacks.get(turn.attempt.id, (None, None))
+        if weight != turn.weight:
+            stack = None
+        yield Step(turn, carries, stack)
+        carries = stack if stack is not None else carries
+
+
+def _stored(now: Picture) -> list[dict[str, Any]]:
+    return [] if now.plan is None else now.plan["steps"]
+
+
+def _fresh_steps(now: Picture, order: Sequence[Turn], equipment: Equipment, lift: Lift) -> Iterator[Step]:
+    """The steps of a flight that is not on yet: planned from an empty bar."""
+    turns = [turn for turn in order if loadable(equipment, turn.weight)]
+    made = plan_for(now, equipment, (), turns, lift.id)
+    stacks = {} if made is None else {t.attempt.id: c.stack for t, c in zip(turns, made.changes, strict=True)}
+    carries: Stack = ()
+    for turn in order:
+        stack = stacks.get(turn.attempt.id)
+        yield Step(turn, carries, stack)
+        carries = stack if stack is not None else carries
+
+
+@dataclass(frozen=True, slots=True)
+class Handled:
+    """Plates and mass handled at one end over some changes."""
+
+    plates: int
+    mass: Fraction
+
+
+def handled(steps: Sequence[Step]) -> Handled:
+    """What the steps cost as planned."""
+    plates, mass = 0, Fraction(0)
+    for step in steps:
+        hands = step.hands
+        if hands is not None:
+            plates += len(hands.off) + len(hands.on)
+            mass += sum(hands.off + hands.on, Fraction(0))
+    return Handled(plates, mass)
+
+
+def handled_by_chart(steps: Sequence[Step], equipment: Equipment) -> Handled | None:
+    """What the same weights cost as the wall chart loads them, from the same start; None where it cannot."""
+    by_chart: list[Step] = []
+    carries = steps[0].before if steps else ()
+    for step in steps:
+        if step.stack is None:
+            continue
+        stack = chart_stack(equipment, step.turn.weight)
+        if stack is None:
+            return None
+        by_chart.append(Step(step.turn, carries, stack))
+        carries = stack
+    return handled(by_chart)
+
+
+def is_up(one: Board, attempt_id: int) -> bool:
+    """Whether this attempt is the one that is up."""
+    return one.up is not None and one.up.attempt.id == attempt_id
+
+
+def hands_off(one: Board) -> bool:
+    """The bar is loaded: nothing may change on it."""
+    return one.now.bar.condition is Condition.LIFTING
+
+
+def lifted_last(one: Board) -> int | None:
+    """The attempt whose lifter now hands in the next weight: the newest result of the lift looked at."""
+    if one.programme is None or one.lift is None or one.flight is None:
+        return None
+    members = {lifter.id for lifter in one.programme.of_flight(one.flight.id)}
+    done = [
+        a
+        for a in one.programme.attempts
+        if a.lift_id == one.lift.id and a.lifter_id in members and a.result in (Result.GOOD, Result.MISSED)
+    ]
+    return None if not done else max(done, key=lambda a: (a.number, a.weight or 0)).id

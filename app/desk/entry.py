@@ -1,0 +1,112 @@
+"""One entry: a transaction that is journalled, settles the platforms it touched, and is then made known."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass, field
+from datetime import datetime
+
+from sqlalchemy import Engine
+from sqlmodel import Session, col, select
+
+from app.desk.hub import Hub, platform_topic
+from app.desk.settle import settle
+from app.store.engine import writing
+from app.store.journal import Recorder
+from app.store.picture import Picture, get, key, picture
+from app.store.tables import JournalRow, PlatformRow
+
+Clock = Callable[[], datetime]
+
+
+@dataclass(frozen=True, slots=True)
+class Desk:
+    """What every use case needs: where the meet is kept, who is told, and what time it is (aware UTC)."""
+
+    engine: Engine
+    hub: Hub
+    clock: Clock
+
+
+@dataclass(slots=True)
+class Work:
+    """An entry being made."""
+
+    session: Session
+    meet_id: int
+    platform_id: int | None
+    now: datetime
+    who: str
+    what: str = ""
+    undoes: int | None = None
+    touched: set[int] = field(default_factory=set)
+
+    @property
+    def platform(self) -> PlatformRow:
+        """The row of the platform that this entry is about."""
+        return get(self.session, PlatformRow, self.platform_id, "platform")
+
+    def picture(self) -> Picture:
+        """The platform as it stands, this entry's own changes included."""
+        self.session.flush()
+        return picture(self.session, self.platform.id or 0)
+
+
+@contextmanager
+def platform_entry(desk: Desk, platform_id: int, who: str) -> Iterator[Work]:
+    """An entry about one platform."""
+    with writing(desk.engine) as session:
+        meet_id = get(session, PlatformRow, platform_id, "platform").meet_id
+        work = Work(session, meet_id, platform_id, desk.clock(), who, touched={platform_id})
+        recorder = Recorder(session)
+        yield work
+        changed = _close(work, recorder)
+    _publish(desk, changed)
+
+
+@contextmanager
+def meet_entry(desk: Desk, meet_id: int, who: str) -> Iterator[Work]:
+    """An entry about the whole meet (its roster, its equipment): every platform of it gets a new revision."""
+    with writing(desk.engine) as session:
+        work = Work(session, meet_id, None, desk.clock(), who)
+        recorder = Recorder(session)
+        yield work
+        session.flush()
+        rows = session.exec(select(PlatformRow).where(col(PlatformRow.meet_id) == work.meet_id))
+        work.touched |= {key(row) for row in rows}
+        changed = _close(work, recorder)
+    _publish(desk, changed)
+
+
+def _close(work: Work, recorder: Recorder) -> set[int]:
+    """Settle, journal, and count the revision up; does nothing at all when nothing was changed."""
+    if not recorder.edits():
+        return set()
+    for platform_id in sorted(work.touched):
+        settle(work.session, platform_id)
+    edits = recorder.edits()
+    revision = None
+    for platform_id in sorted(work.touched):
+        row = get(work.session, PlatformRow, platform_id, "platform")
+        row.revision += 1
+        row.changed_at = work.now
+        revision = row.revision
+    work.session.add(
+        JournalRow(
+            meet_id=work.meet_id,
+            platform_id=work.platform_id,
+            revision=revision if work.platform_id is not None else None,
+            at=work.now,
+            who=work.who,
+            what=work.what,
+            edits=edits,
+            undoes=work.undoes,
+        )
+    )
+    return set(work.touched)
+
+
+def _publish(desk: Desk, changed: set[int]) -> None:
+    for platform_id in sorted(changed):
+        desk.hub.publish(platform_topic(platform_id))

@@ -1,0 +1,102 @@
+"""May this weight be declared? A decision as data; the words for people are in it, the writing elsewhere."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+
+from app.loading.chart import loadable
+from app.loading.equipment import Equipment
+from app.loading.mass import parse_mass, show_mass
+from app.meet.model import Attempt, Result
+
+
+@dataclass(frozen=True, slots=True)
+class Refused:
+    """Why a declaration cannot stand, and which weights near it could."""
+
+    because: str
+    below: Fraction | None = None
+    above: Fraction | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Allowed:
+    """The weight, read and found right."""
+
+    weight: Fraction
+
+
+Decision = Allowed | Refused
+
+HEAVIEST = Fraction(2000)  # more than any bar has carried; a slip of the finger, not a declaration
+LOOK_AROUND = 200  # steps to look up and down for a weight that can be made
+
+
+def read_weight(text: str) -> Allowed | Refused:
+    """The typed text as an exact mass; a decimal comma is read as a point."""
+    try:
+        weight = parse_mass(text.strip().replace(",", "."))
+    except ValueError:
+        return Refused(f"“{text.strip()}” is not a weight. Type a number such as 142.5.")
+    if weight < 0:
+        return Refused("A weight cannot be less than 0.")
+    if weight > HEAVIEST:
+        return Refused(f"{show_mass(weight)} is more than any bar carries. Check the number.")
+    return Allowed(weight)
+
+
+def decide(
+    weight: Fraction,
+    attempt: Attempt,
+    earlier: Sequence[Attempt],
+    step: Fraction,
+    equipment: Equipment,
+    unit: str,
+) -> Decision:
+    """Whether ``attempt`` may be declared at ``weight``; the first rule that it breaks is named.
+
+    ``earlier`` are the lifter's attempts of this lift with a lower number. Order of the checks: already
+    lifted, under the bar, no multiple of the step, below a weight already taken (IPL Rulebook 2019, 6.1.1:
+    never below a weight already failed; after a good lift common practice), cannot be made.
+    """
+    if attempt.result is not Result.OPEN:
+        return Refused("This attempt has been lifted. Undo its result first, or correct the result.")
+    shown = f"{show_mass(weight)} {unit}"
+    if weight < equipment.base_mass:
+        return Refused(
+            f"{shown} is lighter than the bar with its collars, {show_mass(equipment.base_mass)} {unit}.",
+            above=equipment.base_mass,
+        )
+    if weight % step:
+        below, above = _makeable_near(weight, step, equipment)
+        return Refused(f"{shown} is not a multiple of {show_mass(step)}.", below, above)
+    lifted = [done.weight for done in earlier if done.weight is not None and done.result is not Result.OPEN]
+    floor = max(lifted, default=None)
+    if floor is not None and weight < floor:
+        return Refused(f"{shown} is lower than this lifter's last attempt, {show_mass(floor)}.", above=floor)
+    if loadable(equipment, weight):
+        return Allowed(weight)
+    below, above = _makeable_near(weight, step, equipment)
+    return Refused(f"{shown} cannot be made with the plates at this platform.", below, above)
+
+
+def _makeable_near(
+    weight: Fraction, step: Fraction, equipment: Equipment
+) -> tuple[Fraction | None, Fraction | None]:
+    """The nearest multiples of the step below and above that the plates make; None where there is none."""
+    multiple = weight // step * step
+    lower = (multiple - step * k for k in range(LOOK_AROUND) if multiple - step * k < weight)
+    upper = (multiple + step * k for k in range(1, LOOK_AROUND))
+    below = next((mass for mass in lower if mass >= equipment.base_mass and loadable(equipment, mass)), None)
+    return below, next((mass for mass in upper if loadable(equipment, mass)), None)
+
+
+def sentence(refused: Refused) -> str:
+    """The refusal with the way forward: ``… Nearest: 100 or 102.5.``"""
+    near = [show_mass(mass) for mass in (refused.below, refused.above) if mass is not None]
+    if not near:
+        return refused.because
+    word = "Nearest" if len(near) == 2 else "Next possible"
+    return f"{refused.because} {word}: {' or '.join(near)}."

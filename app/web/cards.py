@@ -1,0 +1,65 @@
+"""Cards: what can be printed, and the swap list of a round."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from fastapi import APIRouter
+from starlette.requests import Request
+from starlette.responses import Response
+
+from app.desk.board import Board, board
+from app.meet.model import ROUNDS
+from app.web import htmx
+from app.web.card_view import card_view
+from app.web.house import DeskDep, OfficialDep, frame, page
+
+router = APIRouter(prefix="/platforms/{platform_id}")
+
+
+@dataclass(frozen=True, slots=True)
+class CardLink:
+    """One card that can be printed; ``now`` marks the round that is lifting."""
+
+    title: str
+    rounds: tuple[tuple[int, str], ...]
+    lifting: bool
+
+
+@router.get("/cards")
+def list_cards(request: Request, platform_id: int, desk: DeskDep, official: OfficialDep) -> Response:
+    """Every flight, lift and round of the platform."""
+    one = board(desk, platform_id)
+    around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Cards")
+    return page("cards/list.html", frame=around, layout=htmx.layout(request), cards=_links(one), now=one.now)
+
+
+def _links(one: Board) -> list[CardLink]:
+    found = []
+    for _, _, programme in one.now.sessions:
+        for lift in programme.lifts:
+            for flight in programme.flights:
+                base = f"/platforms/{one.now.platform_id}/cards/{flight.id}/{lift.id}"
+                lifting = (one.now.flight_id, one.now.lift_id) == (flight.id, lift.id)
+                rounds = tuple((number, f"{base}/{number}") for number in ROUNDS)
+                found.append(CardLink(f"{flight.name}, {lift.name}", rounds, lifting))
+    return found
+
+
+@router.get("/cards/{flight_id}/{lift_id}/{round_number}")
+def show_card(
+    request: Request,
+    platform_id: int,
+    flight_id: int,
+    lift_id: int,
+    round_number: int,
+    desk: DeskDep,
+    official: OfficialDep,
+) -> Response:
+    """The swap list of one round, ready for the browser's print."""
+    one = board(desk, platform_id, flight_id, lift_id)
+    if one.flight is None or one.lift is None or round_number not in ROUNDS:
+        return htmx.go_to(request, f"/platforms/{platform_id}/cards")
+    around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Cards")
+    view = card_view(one, round_number, now=desk.clock())
+    return page("cards/page.html", frame=around, layout=htmx.layout(request), view=view)

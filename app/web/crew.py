@@ -1,0 +1,61 @@
+"""The Crew page and the few things the crew may say."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+from fastapi import APIRouter, Form
+from starlette.requests import Request
+from starlette.responses import Response
+
+from app.desk import bar
+from app.desk.board import board
+from app.desk.entry import Desk
+from app.web import htmx
+from app.web.crew_view import crew_view
+from app.web.house import DeskDep, OfficialDep, frame, page, who
+
+router = APIRouter(prefix="/platforms/{platform_id}")
+ROLE = "crew"
+
+
+@router.get("/crew")
+def show_crew(request: Request, platform_id: int, desk: DeskDep, official: OfficialDep) -> Response:
+    """The crew's screen, or for htmx what changes on it."""
+    return _screen(request, desk, platform_id, official)
+
+
+def _screen(request: Request, desk: Desk, platform_id: int, official: str) -> Response:
+    one = board(desk, platform_id)
+    name = "crew/_now.html" if htmx.wants_fragment(request) else "crew/page.html"
+    around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Crew")
+    return page(name, frame=around, view=crew_view(one))
+
+
+@router.post("/loaded")
+def bar_is_loaded(
+    request: Request, platform_id: int, desk: DeskDep, official: OfficialDep, shown: Annotated[str, Form()]
+) -> Response:
+    """The bar is loaded as shown."""
+    bar.bar_is_loaded(desk, platform_id, shown, who=who(official, ROLE))
+    return _after(request, desk, platform_id, official)
+
+
+@router.post("/bar")
+def bar_carries(
+    request: Request,
+    platform_id: int,
+    desk: DeskDep,
+    official: OfficialDep,
+    answer: Annotated[str, Form(alias="bar")],
+    shown: Annotated[str, Form()],
+) -> Response:
+    """What is on the bar now, after the weight changed under the crew's hands."""
+    bar.bar_carries(desk, platform_id, answer, shown, who=who(official, ROLE))
+    return _after(request, desk, platform_id, official)
+
+
+def _after(request: Request, desk: Desk, platform_id: int, official: str) -> Response:
+    if htmx.wants_fragment(request):
+        return _screen(request, desk, platform_id, official)
+    return htmx.go_to(request, f"/platforms/{platform_id}/crew")

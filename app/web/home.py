@@ -1,0 +1,91 @@
+"""The front door: the meets in this folder, a new one, and the pages of each."""
+
+from __future__ import annotations
+
+from typing import Annotated
+from urllib.parse import quote
+
+from fastapi import APIRouter, Form
+from sqlmodel import col, select
+from starlette.requests import Request
+from starlette.responses import Response
+
+from app.desk import setup
+from app.desk.roster import pictures
+from app.meet.presets import PRESETS
+from app.store.engine import reading
+from app.store.picture import get, key
+from app.store.tables import MeetRow
+from app.web import htmx
+from app.web.house import NAME_COOKIE, DeskDep, OfficialDep, frame, page, who
+
+router = APIRouter()
+
+
+@router.get("/")
+def home(request: Request, desk: DeskDep, official: OfficialDep) -> Response:
+    """All meets of this folder, and the form for a new one."""
+    with reading(desk.engine) as session:
+        meets = [
+            (key(row), row.name, row.unit) for row in session.exec(select(MeetRow).order_by(col(MeetRow.id)))
+        ]
+    return page(
+        "home/page.html", frame=frame("Platewright", official), layout=htmx.layout(request), meets=meets
+    )
+
+
+@router.post("/meets")
+def start_meet(
+    request: Request, desk: DeskDep, name: Annotated[str, Form()] = "", unit: Annotated[str, Form()] = "kg"
+) -> Response:
+    """A new meet."""
+    return htmx.go_to(request, f"/meets/{setup.start_meet(desk, name, unit)}")
+
+
+@router.get("/meets/{meet_id}")
+def show_meet(request: Request, meet_id: int, desk: DeskDep, official: OfficialDep) -> Response:
+    """The meet: its platforms with their pages, and the form for another platform."""
+    with reading(desk.engine) as session:
+        meet = get(session, MeetRow, meet_id, "meet")
+        name, unit = meet.name, meet.unit
+        platforms = pictures(session, meet_id)
+    presets = [(one.key, one.name) for one in PRESETS if one.unit == unit]
+    around = frame(name, official, meet_id, here="Meet")
+    return page(
+        "home/meet.html",
+        frame=around,
+        layout=htmx.layout(request),
+        meet_id=meet_id,
+        name=name,
+        unit=unit,
+        platforms=platforms,
+        presets=presets,
+    )
+
+
+@router.post("/meets/{meet_id}/platforms")
+def add_platform(
+    request: Request,
+    meet_id: int,
+    desk: DeskDep,
+    official: OfficialDep,
+    name: Annotated[str, Form()] = "",
+    preset: Annotated[str, Form()] = "",
+) -> Response:
+    """Another platform."""
+    setup.add_platform(desk, meet_id, name, preset, who=who(official, "director"))
+    return htmx.go_to(request, f"/meets/{meet_id}")
+
+
+@router.post("/official")
+def say_name(
+    request: Request, name: Annotated[str, Form()] = "", back: Annotated[str, Form()] = "/"
+) -> Response:
+    """Who sits at this screen; kept on this device only, shown to the second of two who enter the same thing."""
+    # Only a path of our own: a form must not be able to send people elsewhere.
+    own = back if back.startswith("/") and not back.startswith("//") and "\\" not in back else "/"
+    answer = htmx.go_to(request, own)
+    answer.set_cookie(
+        NAME_COOKIE, quote(" ".join(name.split())[:40]), max_age=7 * 86400, httponly=True, samesite="lax"
+    )
+    return answer

@@ -1,0 +1,343 @@
+"""The Table page as words: who is up, the order with the change each attempt needs, and the score so far."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+
+from app.desk.bar import instruction_name
+from app.desk.board import Board, Step, lifted_last
+from app.loading.mass import show_mass
+from app.meet.model import RESULT_WORDS, ROUNDS, Attempt, Lifter, Result, attempt_name
+from app.meet.order import default_weight
+from app.meet.platform import Condition
+from app.web.views import PlateView
+from app.web.words import plate_views, side_words, stack_words
+
+
+@dataclass(frozen=True, slots=True)
+class Choice:
+    """One flight and lift that the Table may look at."""
+
+    text: str
+    href: str
+    looked_at: bool
+    lifting: bool
+
+
+@dataclass(frozen=True, slots=True)
+class OrderRow:
+    """One attempt still to come."""
+
+    attempt_id: int
+    version: int
+    place: str
+    lot: str
+    lifter: str
+    attempt: str
+    weight: str  # what was handed in, "" when nobody did
+    default: str  # what the rule gives when nobody does, "" for an opener
+    step: str
+    up: bool
+    loaded: bool
+    new_round: int  # the round that begins with this row, 0 when none does
+    off: tuple[PlateView, ...]
+    on: tuple[PlateView, ...]
+    change: str  # "no change", "cannot be made", "build from empty", or "" when off and on say it
+    rack: str
+
+
+@dataclass(frozen=True, slots=True)
+class ScoreCell:
+    """One attempt of the score sheet."""
+
+    attempt_id: int
+    version: int
+    weight: str
+    result: str  # "good lift", …; "" for one still to come
+    kind: str  # "good", "missed", "passed", "open"
+
+
+@dataclass(frozen=True, slots=True)
+class ScoreRow:
+    """A lifter of the flight with the three attempts of the lift."""
+
+    lot: str
+    lifter: str
+    body_weight: str
+    rack: str
+    cells: tuple[ScoreCell, ...]
+    best: str
+
+
+@dataclass(frozen=True, slots=True)
+class UpLine:
+    """Who is up and what the crew is doing for it."""
+
+    attempt_id: int
+    version: int
+    lifter: str
+    lot: str
+    attempt: str
+    weight: str
+    crew: str
+
+
+@dataclass(frozen=True, slots=True)
+class TableView:
+    """The Table page at one revision."""
+
+    meet_id: int
+    platform_id: int
+    platform: str
+    unit: str
+    revision: int
+    as_of: str
+    flight_id: int
+    lift_id: int
+    title: str
+    here: bool
+    choices: tuple[Choice, ...]
+    up: UpLine | None
+    on_deck: str
+    in_the_hole: str
+    condition: str
+    ask: bool
+    asked: str
+    shown: str
+    bar_before: str
+    bar_shown: str
+    side: str
+    order: tuple[OrderRow, ...]
+    score: tuple[ScoreRow, ...]
+    no_opener: tuple[OrderRow, ...]
+    undo_id: int
+    undo: str
+    focus: int  # the attempt whose weight is wanted next
+    here_now: str  # what the platform is lifting, for a Table that looks elsewhere
+
+
+def table_view(one: Board, focus: int = 0) -> TableView:
+    """The Table at one revision; ``focus`` names an attempt to put the cursor on, 0 for the usual one."""
+    assert one.flight is not None and one.lift is not None and one.programme is not None  # noqa: S101, PT018
+    now, bar = one.now, one.now.bar
+    tool = now.tool(one.lift.implement_id)
+    rows = _order_rows(one)
+    return TableView(
+        meet_id=now.meet_id,
+        platform_id=now.platform_id,
+        platform=now.platform,
+        unit=now.unit,
+        revision=now.revision,
+        as_of=now.changed_at.astimezone().strftime("%H:%M:%S"),
+        flight_id=one.flight.id,
+        lift_id=one.lift.id,
+        title=f"{one.flight.name} · {one.lift.name}",
+        here=one.here,
+        choices=choices(one),
+        up=_up_line(one),
+        on_deck=_who(one, 1),
+        in_the_hole=_who(one, 2),
+        condition=bar.condition.value,
+        ask=one.ask,
+        asked=_asked(one),
+        shown=instruction_name(bar),
+        bar_before=stack_words(bar.hand.before) if bar.hand else "",
+        bar_shown=stack_words(bar.hand.stack) if bar.hand else "",
+        side=side_words(tool),
+        order=rows,
+        score=tuple(_score_row(one, lifter) for lifter in one.programme.of_flight(one.flight.id)),
+        no_opener=tuple(_no_opener_row(one, lifter) for lifter in one.no_opener),
+        undo_id=one.undo.id if one.undo else 0,
+        undo=one.undo.what if one.undo else "",
+        focus=focus or _usual_focus(one, rows),
+        here_now=_here_now(one),
+    )
+
+
+def choices(one: Board) -> tuple[Choice, ...]:
+    """Every flight and lift of the platform, in the order they are lifted."""
+    base = f"/platforms/{one.now.platform_id}/table"
+    found = []
+    for _, _, programme in one.now.sessions:
+        for lift in programme.lifts:
+            for flight in programme.flights:
+                looked_at = one.flight == flight and one.lift == lift
+                lifting = (one.now.flight_id, one.now.lift_id) == (flight.id, lift.id)
+                href = f"{base}?flight={flight.id}&lift={lift.id}"
+                found.append(Choice(f"{flight.name}, {lift.name}", href, looked_at, lifting))
+    return tuple(found)
+
+
+def _here_now(one: Board) -> str:
+    lifting = next((choice.text for choice in choices(one) if choice.lifting), "")
+    return lifting or "nothing yet"
+
+
+def _up_line(one: Board) -> UpLine | None:
+    if one.up is None or one.lift is None:
+        return None
+    turn = one.up
+    return UpLine(
+        attempt_id=turn.attempt.id,
+        version=turn.attempt.version,
+        lifter=turn.lifter.name,
+        lot=str(turn.lifter.lot),
+        attempt=attempt_name(one.lift.name, turn.attempt.number),
+        weight=show_mass(turn.weight),
+        crew=_crew_words(one),
+    )
+
+
+def _crew_words(one: Board) -> str:
+    condition = one.now.bar.condition
+    if one.ask:
+        return "waits for an answer: what is on the bar?"
+    if condition is Condition.HOLD:
+        return "on hold"
+    if condition is Condition.LIFTING:
+        return "bar is loaded"
+    if condition is Condition.CHANGING:
+        return "loading"
+    if one.up is not None and one.up.assumed:
+        return "waits: this weight has not been handed in"
+    return "waits: this weight cannot be made"
+
+
+def _asked(one: Board) -> str:
+    hand = one.now.bar.hand
+    if not one.ask or hand is None:
+        return ""
+    wanted = f"{one.up.lifter.name}, {show_mass(one.up.weight)}" if one.up else "nobody"
+    return f"The crew was loading {show_mass(hand.weight)}. Now up: {wanted}. What is on the bar?"
+
+
+def _who(one: Board, place: int) -> str:
+    if not one.here or len(one.steps) <= place:
+        return ""
+    turn = one.steps[place].turn
+    return f"{turn.lifter.name}, {show_mass(turn.weight)}"
+
+
+def _usual_focus(one: Board, rows: tuple[OrderRow, ...]) -> int:
+    """The next attempt of whoever has just lifted, if its weight is still wanted; else the first one wanted."""
+    wanted = [
+        row.attempt_id for row in (*rows, *(_no_opener_row(one, x) for x in one.no_opener)) if not row.weight
+    ]
+    last = lifted_last(one)
+    if last is not None and one.programme is not None:
+        done = next(a for a in one.programme.attempts if a.id == last)
+        after = [
+            a.id
+            for a in one.programme.attempts
+            if (a.lifter_id, a.lift_id, a.number) == (done.lifter_id, done.lift_id, done.number + 1)
+        ]
+        if after and after[0] in wanted:
+            return after[0]
+    return wanted[0] if wanted else 0
+
+
+def _order_rows(one: Board) -> tuple[OrderRow, ...]:
+    rows = []
+    before_round = 0
+    for place, step in enumerate(one.steps, start=1):
+        rows.append(_order_row(one, step, place, step.turn.attempt.number != before_round))
+        before_round = step.turn.attempt.number
+    return tuple(rows)
+
+
+def _order_row(one: Board, step: Step, place: int, new_round: bool) -> OrderRow:  # noqa: FBT001 - one flag of a row
+    assert one.lift is not None  # noqa: S101 - rows belong to a lift
+    turn, hands = step.turn, step.hands
+    up = one.here and one.up is not None and one.up.attempt.id == turn.attempt.id
+    return OrderRow(
+        attempt_id=turn.attempt.id,
+        version=turn.attempt.version,
+        place=str(place),
+        lot=str(turn.lifter.lot),
+        lifter=turn.lifter.name,
+        attempt=attempt_name(one.lift.name, turn.attempt.number),
+        weight="" if turn.assumed else show_mass(turn.weight),
+        default=show_mass(turn.weight) if turn.assumed else "",
+        step=show_mass(one.lift.step),
+        up=up,
+        loaded=up and one.now.bar.condition is Condition.LIFTING,
+        new_round=turn.attempt.number if new_round else 0,
+        off=plate_views(hands.off, one.now) if hands and step.before is not None else (),
+        on=plate_views(hands.on, one.now) if hands else (),
+        change=_change_words(step, ask=one.ask and up),
+        rack=one.now.racks.get((turn.lifter.id, one.lift.id), ""),
+    )
+
+
+def _change_words(step: Step, *, ask: bool) -> str:
+    if ask:
+        return "asked at the bar"
+    if step.hands is None:
+        return "cannot be made"
+    if step.before is None:
+        return "build from empty"
+    return "" if step.hands.off or step.hands.on else "no change"
+
+
+def _no_opener_row(one: Board, lifter: Lifter) -> OrderRow:
+    assert one.lift is not None and one.programme is not None  # noqa: S101, PT018 - a lifter of a lift
+    opener = next(a for a in one.programme.of_lift(one.lift.id)[lifter.id] if a.number == 1)
+    return OrderRow(
+        attempt_id=opener.id,
+        version=opener.version,
+        place="–",
+        lot=str(lifter.lot),
+        lifter=lifter.name,
+        attempt=attempt_name(one.lift.name, 1),
+        weight="",
+        default="",
+        step=show_mass(one.lift.step),
+        up=False,
+        loaded=False,
+        new_round=0,
+        off=(),
+        on=(),
+        change="no opener yet",
+        rack=one.now.racks.get((lifter.id, one.lift.id), ""),
+    )
+
+
+def _score_row(one: Board, lifter: Lifter) -> ScoreRow:
+    assert one.lift is not None and one.programme is not None  # noqa: S101, PT018 - a lifter of a lift
+    attempts = {a.number: a for a in one.programme.of_lift(one.lift.id).get(lifter.id, ())}
+    best = max(
+        (a.weight for a in attempts.values() if a.result is Result.GOOD and a.weight is not None),
+        default=None,
+    )
+    return ScoreRow(
+        lot=str(lifter.lot),
+        lifter=lifter.name,
+        body_weight="" if lifter.body_weight is None else show_mass(lifter.body_weight),
+        rack=one.now.racks.get((lifter.id, one.lift.id), ""),
+        cells=tuple(_cell(attempts, number, one.lift.step) for number in ROUNDS if number in attempts),
+        best="" if best is None else show_mass(best),
+    )
+
+
+def _cell(attempts: dict[int, Attempt], number: int, step: Fraction) -> ScoreCell:
+    attempt = attempts[number]
+    before = attempts.get(number - 1)
+    default = default_weight(before, before.weight if before else None, step)
+    shown = show_mass(attempt.weight) if attempt.weight is not None else ""
+    if (
+        not shown
+        and default is not None
+        and attempt.result is Result.OPEN
+        and before
+        and before.result is not Result.OPEN
+    ):
+        shown = f"({show_mass(default)})"
+    lifted = attempt.result is not Result.OPEN
+    return ScoreCell(
+        attempt.id,
+        attempt.version,
+        shown,
+        RESULT_WORDS[attempt.result] if lifted else "",
+        attempt.result.value,
+    )

@@ -1,0 +1,72 @@
+/* The Table by keyboard: one key for a result, digits and Enter for a weight. Everything works without it too. */
+(() => {
+  "use strict";
+  const seen = new Map(); // attempt → version its weight box had when typing began
+
+  const isWeight = (element) => element instanceof HTMLInputElement && element.name === "weight";
+  const takesText = (element) => element instanceof HTMLElement && element.matches("input:not([type=hidden]), textarea, select");
+
+  function stepBy(box, direction) {
+    const step = Number(box.dataset.step);
+    const from = Number((box.value || box.placeholder).replace(",", "."));
+    if (!Number.isFinite(from) || !(step > 0)) return;
+    const next = direction > 0 ? Math.floor(from / step + 1 + 1e-9) * step : Math.ceil(from / step - 1 - 1e-9) * step;
+    box.value = String(Math.max(0, Number(next.toFixed(4))));
+    box.dispatchEvent(new Event("input", { bubbles: true }));
+  }
+
+  function onKey(event) {
+    if (event.ctrlKey || event.altKey || event.metaKey || event.isComposing) return;
+    const box = event.target;
+    if (isWeight(box) && (event.key === "ArrowUp" || event.key === "ArrowDown")) {
+      event.preventDefault();
+      stepBy(box, event.key === "ArrowUp" ? 1 : -1);
+      return;
+    }
+    if (isWeight(box) && event.key === "Escape") { forget(box); return; }
+    if (box.id === "find-lot") { if (event.key === "Enter") { event.preventDefault(); find(box); } return; }
+    if (takesText(box) && !isWeight(box)) return;
+    const key = event.key.toLowerCase();
+    const target = document.querySelector(`[data-key="${CSS.escape(key)}"]`);
+    const place = document.querySelector(`[data-key-focus="${CSS.escape(key)}"]`);
+    // A repeated key is a finger that lay too long, not a second decision.
+    if (target && !event.repeat) { event.preventDefault(); target.click(); }
+    else if (place) { event.preventDefault(); place.focus(); place.select(); }
+  }
+
+  function find(box) {
+    const lot = box.value.trim();
+    const boxes = [...document.querySelectorAll(".weight-box")].filter((one) => one.dataset.lot === lot);
+    const wanted = boxes.find((one) => one.value === "") ?? boxes[0];
+    box.value = "";
+    if (wanted) { wanted.focus(); wanted.select(); } else box.placeholder = "not here";
+  }
+
+  function forget(box) {
+    box.value = box.defaultValue;
+    seen.delete(box.form.elements.attempt.value);
+  }
+
+  document.addEventListener("keydown", onKey);
+
+  // The version that counts is the one on the screen when typing began: an update that arrives meanwhile must
+  // not make a colleague's entry look as if it had been seen.
+  document.addEventListener("input", (event) => {
+    if (!isWeight(event.target)) return;
+    const { attempt, version } = event.target.form.elements;
+    if (!seen.has(attempt.value)) seen.set(attempt.value, version.value);
+  });
+  document.addEventListener("submit", (event) => {
+    const { attempt, version, weight } = event.target.elements;
+    if (!weight || !attempt || !seen.has(attempt.value)) return;
+    version.value = seen.get(attempt.value);
+    seen.delete(attempt.value);
+  }, true);
+
+  // Boxes that nobody is typing in show what the server says.
+  document.addEventListener("htmx:after:swap", () => {
+    for (const box of document.querySelectorAll(".weight-box")) {
+      if (!seen.has(box.form.elements.attempt.value) && box.value !== box.defaultValue) box.value = box.defaultValue;
+    }
+  });
+})();
