@@ -11,7 +11,7 @@ from app.loading.equipment import Equipment, Plate, Stack
 MOST_SUMS = 2_000_000
 
 
-class TooManyWeights(ValueError):  # noqa: N818 - says what is wrong with the plates
+class TooManyWeights(ValueError):
     """The plates make more different weights than can be listed."""
 
 

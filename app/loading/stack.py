@@ -13,7 +13,7 @@ from app.loading.equipment import Equipment, Order, Stack
 from app.loading.mass import show_mass
 
 
-class WrongLoad(ValueError):  # noqa: N818 - the trade says misload or wrong load, not error
+class WrongLoad(ValueError):
     """A stack that must not be shown; the message is one plain sentence."""
 
 

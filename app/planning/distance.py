@@ -20,18 +20,17 @@ class Distance:
     Time: the product of the two lengths, vectorised over the many.
     """
 
-    def __init__(self, alphabet: Alphabet, codes: Codes, access: Access, off: Numbers, on: Numbers) -> None:
+    def __init__(self, alphabet: Alphabet, access: Access, off: Numbers, on: Numbers) -> None:
         zero = np.zeros(1, off.dtype)
         self.alphabet = alphabet
-        self.codes = codes
         self.access = access
         self.off = np.concatenate([zero, off])
         self.on = np.concatenate([zero, on])
 
-    def __call__(self, many: NDArray[Any], one: NDArray[Any] | int) -> Numbers:
-        """Prices from the stacks ``many`` (nodes) to the stack ``one`` (a node)."""
-        rows = self.alphabet.read(self.codes[many]).astype(np.int64)
-        target = self.alphabet.read(self.codes[np.array([one])])[0].astype(np.int64)
+    def __call__(self, many: Codes, one: Codes) -> Numbers:
+        """Prices from the stacks ``many`` to the stack ``one`` (an array of one code)."""
+        rows = self.alphabet.read(many).astype(np.int64)
+        target = self.alphabet.read(one)[0].astype(np.int64)
         target = target[target > 0]
         gross = self.off[rows].sum(axis=1) + self.on[target].sum()
         stay = {

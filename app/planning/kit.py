@@ -14,8 +14,10 @@ from app.planning.request import PlanRequest
 class Kit:
     """Plate kinds with at least one piece at each end, heaviest first.
 
-    ``mass``, ``shares`` are counted in ``step``; ``thickness`` and ``room`` in one common part of a
-    millimetre; ``diameter`` likewise (its own part). ``shares[t]`` is what one end carries at attempt t.
+    ``mass``, ``shares`` are counted in ``step``; ``thickness`` and ``room`` in ``mm``; ``diameter`` and
+    ``finger`` (twice ``finger_mm``: a hole stands half a diameter high) in ``rim``. Sizes that are not known
+    are 0: the check of the request sees to it that none is missed. ``shares[t]`` is what one end carries at
+    attempt t.
     """
 
     plates: tuple[Plate, ...]
@@ -25,6 +27,9 @@ class Kit:
     thickness: tuple[int, ...]
     room: int | None
     mm: Fraction
+    diameter: tuple[int, ...]
+    finger: int
+    rim: Fraction
     start: tuple[int, ...]
     shares: tuple[int, ...]
 
@@ -47,6 +52,8 @@ def make_kit(request: PlanRequest, shares: tuple[Fraction, ...]) -> Kit:
     thickness = [plate.thickness_mm or Fraction(0) for plate in plates]
     room = equipment.room_mm
     part = common_step([*thickness, *([room] if room else [])])
+    diameters = [plate.diameter_mm or Fraction(0) for plate in plates]
+    rim = common_step([*diameters, 2 * request.finger_mm])
     place = {plate.face: kind for kind, plate in enumerate(plates)}
     return Kit(
         plates=plates,
@@ -56,6 +63,9 @@ def make_kit(request: PlanRequest, shares: tuple[Fraction, ...]) -> Kit:
         thickness=tuple(int(width / part) for width in thickness),
         room=None if room is None else int(room / part),
         mm=part,
+        diameter=tuple(int(width / rim) for width in diameters),
+        finger=int(2 * request.finger_mm / rim),
+        rim=rim,
         start=tuple(place[face] for face in request.start),
         shares=tuple(int(share / step) for share in shares),
     )

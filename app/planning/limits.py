@@ -8,7 +8,6 @@ from functools import cached_property
 import numpy as np
 
 from app.planning.prices import Numbers, Prices
-from app.planning.smaller import Part
 from app.planning.sweep import Course, Sweep
 
 
@@ -51,12 +50,16 @@ class Limits:
 
     def fee(self, part: int) -> Numbers:
         """The measure that each stack of a part costs in itself: its threading."""
-        return np.asarray(self.course.fee[part] // self.prices.fold)
+        return self._measured(self.course.fee[part])
+
+    def _measured(self, packed: Numbers) -> Numbers:
+        """The measure alone of packed prices."""
+        return np.asarray(packed // self.prices.fold)
 
     def can_keep(self, limit: int) -> bool:
         """Whether some chain keeps to the limit."""
         course = self.course
-        reached = np.zeros(len(course.part(0).ends), self.prices.dtype)
+        reached = self._measured(course.seed)
         for attempt in range(1, len(course.attempts)):
             found = self._measure.carry(reached, course.part(attempt - 1), course.part(attempt))
             kept = found + self.fee(course.attempts[attempt]) <= limit
@@ -83,6 +86,7 @@ class Limits:
         for attempt in range(1, len(self.course.attempts)):
             before, after = self.course.part(attempt - 1), self.course.part(attempt)
             free = np.zeros(len(before.ends), self.prices.dtype)
+            free = self._measured(self.course.seed) if attempt == 1 else free
             found = self._measure.carry(free, before, after) + self.fee(self.course.attempts[attempt])
             bound = max(bound, int(found.min()))
         return bound
@@ -90,25 +94,27 @@ class Limits:
     def least_total(self, limit: int) -> list[Numbers]:
         """As :func:`app.planning.sweep.least_total`, over the chains that keep to the limit."""
         course = self.course
-        reached = [np.zeros(len(course.part(0).ends), self.prices.dtype)]
+        reached = [course.seed]
         for attempt in range(1, len(course.attempts)):
             here = course.attempts[attempt]
-            found = self._carry(reached[-1], course.part(attempt - 1), course.part(attempt), here, limit)
+            found = self._carry(reached[-1], attempt, limit)
             reached.append(np.minimum(found + course.fee[here], self.never))
         return reached
 
-    def _carry(self, values: Numbers, before: Part, after: Part, here: int, limit: int) -> Numbers:
+    def _carry(self, values: Numbers, attempt: int, limit: int) -> Numbers:
         off, on = self._loads
+        before, after = self.course.part(attempt - 1), self.course.part(attempt)
         sweep, nodes = self._packed, after.nodes()
         downs = []
-        heights = off[before.ends]
+        # All stacks of part 0 are what is left of the start, so they are as high as the start.
+        heights = off[before.ends] + (self._measured(self.course.seed) if attempt == 1 else 0)
         for height in np.unique(heights[values < self.never]):
             sweep.down(np.where(heights == height, values, self.never), before)
             downs.append((height, sweep.value[nodes]))
             sweep.clear(before)
         found = np.full(len(after.ends), self.never, self.prices.dtype)
         kept_load = off[nodes] + on[nodes]
-        tops = on[after.ends] + self.fee(here)
+        tops = on[after.ends] + self.fee(self.course.attempts[attempt])
         for top in np.unique(tops):
             for height, value in downs:
                 allowed = np.where(kept_load >= height + top - limit, value, self.never)

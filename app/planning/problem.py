@@ -5,11 +5,14 @@ from __future__ import annotations
 from collections import Counter
 from dataclasses import dataclass
 from fractions import Fraction
+from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from app.loading.equipment import Stack
 from app.planning.answer import ChartFigures
+from app.planning.arrange import comfortable_vectors
 from app.planning.checking import check_request
 from app.planning.compose import chart_figures, chart_stacks
 from app.planning.counts import Ints, count_vectors
@@ -69,7 +72,7 @@ class Problem:
         by = {Measure.PLATES: Fraction(worst.plates), Measure.MASS: worst.mass, Measure.TIME: worst.time_s}
         return by[self.request.measure]
 
-    def stacks(self, rows: Ints) -> list[Stack]:
+    def stacks(self, rows: NDArray[Any]) -> list[Stack]:
         """Rows of digits as stacks of faces."""
         return [tuple(self.kit.plates[digit - 1].face for digit in row if digit) for row in rows.tolist()]
 
@@ -82,6 +85,7 @@ def prepare(request: PlanRequest) -> Problem:
     for target, share in zip(request.targets, kit.shares, strict=True):
         if not len(vectors[share]):
             raise refuse_weight(request.equipment, target)
+    vectors = {share: comfortable_vectors(kit, request, rows) for share, rows in vectors.items()}
     charts = chart_stacks(request)
     start = np.bincount(kit.start, minlength=kit.kinds)[None, :].astype(np.int64)
     chart_counts = _chart_counts(kit, charts)

@@ -7,7 +7,7 @@ from fractions import Fraction
 from app.loading.mass import show_mass
 
 
-class Refusal(Exception):  # noqa: N818 - a polite refusal, not a fault
+class Refusal(Exception):
     """A request that has no plan. ``code`` is one of ``unloadable``, ``lighter-than-bar``, ``no-room`` and
     ``bad-request``; ``below`` and ``above`` are the nearest weights that can be made; ``key`` names what is
     wrong in a bad request."""

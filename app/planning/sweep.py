@@ -2,26 +2,32 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
 from app.planning.prices import Numbers
-from app.planning.smaller import Graph, Part, Places
+from app.planning.smaller import Codes, Graph, Part, Places
 
 
 @dataclass(frozen=True, slots=True)
 class Course:
-    """Attempts as indices of the graph's parts, the start first, and what each stack costs in itself
-    (``fee[part]``: threading and distance to the chart)."""
+    """Attempts as indices of the graph's parts, the start (part 0) first; what each stack costs in itself
+    (``fee[part]``: threading and distance to the chart); and what it takes to come from what stands on the
+    bar to each stack of part 0 (``seed``; all of it belongs to the first change)."""
 
     graph: Graph
     attempts: tuple[int, ...]
     fee: tuple[Numbers, ...]
+    seed: Numbers
 
     def part(self, attempt: int) -> Part:
         return self.graph.parts[self.attempts[attempt]]
+
+    def stacks(self, attempt: int) -> Codes:
+        """Codes of the stacks of an attempt."""
+        return self.graph.codes[self.part(attempt).ends]
 
 
 class Sweep:
@@ -88,7 +94,7 @@ class Sweep:
 
 def least_total(course: Course, sweep: Sweep) -> list[Numbers]:
     """For every attempt, the least price of reaching each of its stacks from the start (aim total)."""
-    reached = [np.zeros(len(course.part(0).ends), sweep.off.dtype)]
+    reached = [course.seed]
     for attempt in range(1, len(course.attempts)):
         here = course.attempts[attempt]
         found = sweep.carry(reached[-1], course.part(attempt - 1), course.part(attempt))
@@ -96,8 +102,8 @@ def least_total(course: Course, sweep: Sweep) -> list[Numbers]:
     return reached
 
 
-Pricer = Callable[[Places, int], Numbers]
-"""Prices of changes from many stacks to one (all as nodes)."""
+Pricer = Callable[[Codes, Codes], Numbers]
+"""Prices of changes from many stacks to one."""
 
 
 def way_back(
@@ -111,27 +117,25 @@ def way_back(
     place = int(np.argmin(reached[-1]))
     chain = [place]
     for attempt in range(len(course.attempts) - 1, 0, -1):
-        here = course.attempts[attempt]
-        fee = course.fee[here][place]
+        fee = course.fee[course.attempts[attempt]][place]
         wanted = reached[attempt][place] - fee
         most = wanted if within is None else (within[0] - fee // within[1] + 1) * within[1] - 1
-        node = int(course.part(attempt).ends[place])
-        place = _first_from(
-            course.part(attempt - 1), reached[attempt - 1], node, price, wanted=wanted, most=most
-        )
+        stack = course.stacks(attempt)[[place]]
+        before, stacks = reached[attempt - 1], course.stacks(attempt - 1)
+        for some in _in_pieces(np.flatnonzero(before <= wanted)):
+            prices = price(stacks[some], stack)
+            # The way to a stack of part 0 belongs to the first change.
+            change = prices + course.seed[some] if attempt == 1 else prices
+            fits = (before[some] + prices == wanted) & (change <= most)
+            if fits.any():
+                place = int(some[np.argmax(fits)])
+                break
+        else:
+            raise AssertionError("the sweep reached a stack that no stack before it explains")
         chain.append(place)
     return chain[::-1]
 
 
-CHUNK = 4096
-
-
-def _first_from(part: Part, before: Numbers, node: int, price: Pricer, *, wanted: int, most: int) -> int:
-    candidates = np.flatnonzero(before <= wanted)
-    for begin in range(0, len(candidates), CHUNK):
-        some = candidates[begin : begin + CHUNK]
-        prices = price(part.ends[some], node)
-        fits = (before[some] + prices == wanted) & (prices <= most)
-        if fits.any():
-            return int(some[np.argmax(fits)])
-    raise AssertionError("the sweep reached a stack that no stack before it explains")
+def _in_pieces(places: Places, size: int = 4096) -> Iterator[Places]:
+    for begin in range(0, len(places), size):
+        yield places[begin : begin + size]

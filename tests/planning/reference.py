@@ -6,6 +6,7 @@ It shares nothing with ``app.planning`` but the request's dataclasses. Use it on
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 from fractions import Fraction
 from functools import lru_cache
 from itertools import combinations, pairwise, product
@@ -145,15 +146,35 @@ def best(request: PlanRequest) -> tuple[Pair, Fraction, bool | None] | None:
     limits = sorted({price(a, b)[0] for one, two in pairwise(layers) for a in one for b in two}) or [
         Fraction(0)
     ]
-    if request.aim is Aim.TOTAL and request.limit is None:
+    limit = chart_worst(request) if request.limit == "chart" else request.limit
+    if request.aim is Aim.TOTAL and limit is None:
         total = _within(layers, price, limits[-1])
         return (total, Fraction(-1), None) if total else None
-    if request.aim is Aim.TOTAL and isinstance(request.limit, Fraction):
-        total = _within(layers, price, request.limit)
+    if request.aim is Aim.TOTAL:
+        total = _within(layers, price, limit)
         if total:
             return total, Fraction(-1), True
     least = next(limit for limit in limits if _within(layers, price, limit))
     return _within(layers, price, least), least, None if request.aim is Aim.WORST else False
+
+
+def chart_worst(request: PlanRequest) -> Fraction | None:
+    """The slowest change of the wall chart; None if it has no stack for some target."""
+    charts = []
+    ends, heaviest_first = request.equipment.implement.ends, -1
+    for target in request.targets:
+        share, made = (target - request.equipment.base_mass) / ends, []
+        rows = sorted(request.equipment.plates, key=lambda plate: plate.face * heaviest_first)
+        for counts in product(*(range(plate.count // ends, -1, -1) for plate in rows)):
+            stack = tuple(plate.face for plate, n in zip(rows, counts, strict=True) for _ in range(n))
+            if sum(stack) == share:
+                made.append(stack)
+        if not made or not fits(request, made[0]) or not keeps_order(request, made[0]):
+            return None
+        charts.append(made[0])
+    sleeve = replace(request, access=Access.OUTER_END)
+    steps = pairwise([request.start, *charts])
+    return max((change_price(sleeve, before, after)[0] for before, after in steps), default=Fraction(0))
 
 
 def _within(layers, price, limit: Fraction) -> Pair | None:

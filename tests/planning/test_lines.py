@@ -152,11 +152,14 @@ def test_a_bad_value_is_refused_by_its_key_in_one_sentence(changes, key) -> None
 @pytest.mark.parametrize(
     "text",
     [
-        "", "{", "[]", "null", "5", '"x"', "nul", "[" * 200_000, '{"a":' * 100_000, json.dumps(BASE)[:-1],
-        json.dumps(BASE).replace("100", "NaN"), json.dumps(BASE).replace("100", "-Infinity"),
+        "", "{", "[]", "null", "5", '"x"', "nul", "[" * 200_000, '{"a":' * 100_000,
+        json.dumps(BASE)[:-1],
+        json.dumps(BASE).replace("100", "NaN"),
+        json.dumps(BASE).replace("100", "-Infinity"),
         json.dumps(BASE).replace("100", "9" * 5000),
-        json.dumps(BASE).replace("100", "1e99999999999999999999"), json.dumps(BASE).replace("100", "1e400"), '{"targets": [], "targets": []}', '{"\\ud800": 1}',
-        '{"unit": "\\ud800"}', "x" * 2_000_001,
+        json.dumps(BASE).replace("100", "1e99999999999999999999"),
+        json.dumps(BASE).replace("100", "1e400"),
+        '{"targets": [], "targets": []}', '{"\\ud800": 1}', '{"unit": "\\ud800"}', "x" * 2_000_001,
     ],
     ids=range(19),
 )  # fmt: skip
