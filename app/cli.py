@@ -157,3 +157,7 @@ def _plan(chosen: argparse.Namespace) -> int:
 def _fail(sentence: str) -> int:
     print(sentence, file=sys.stderr)
     return 2
+
+
+if __name__ == "__main__":
+    main()

@@ -11,15 +11,15 @@ from app.desk.entry import Desk
 from app.desk.settle import must_ask, plan_for
 from app.loading.change import HandList, hand_list
 from app.loading.chart import chart_stack, loadable
-from app.loading.mass import parse_mass
 from app.loading.equipment import Access, Equipment, Stack
+from app.loading.mass import parse_mass
 from app.meet.horizon import Programme
 from app.meet.model import Flight, Lift, Lifter, Result
 from app.meet.order import Turn, without_opener
-from app.meet.platform import Condition, up_next
+from app.meet.platform import up_next
 from app.store.engine import reading
 from app.store.journal import last_undoable
-from app.store.picture import Picture, key, picture, to_stack
+from app.store.picture import Picture, Tool, key, picture, to_stack
 
 
 @dataclass(frozen=True, slots=True)
@@ -47,12 +47,21 @@ class Undoable:
 
 
 @dataclass(frozen=True, slots=True)
+class Bare:
+    """A platform on which nobody lifts yet: no flight has come in with the roster."""
+
+    now: Picture
+
+
+@dataclass(frozen=True, slots=True)
 class Board:
     """A platform as the pages show it, looking at one flight and lift (``here``: it is the one lifting)."""
 
     now: Picture
-    flight: Flight | None
-    lift: Lift | None
+    programme: Programme
+    flight: Flight
+    lift: Lift
+    equipment: Equipment
     here: bool
     order: tuple[Turn, ...]
     steps: tuple[Step, ...]
@@ -62,37 +71,36 @@ class Board:
     undo: Undoable | None
 
     @property
-    def programme(self) -> Programme | None:
-        """The session looked at."""
-        return None if self.lift is None else self.now.programme(self.lift.id)
-
-    @property
-    def equipment(self) -> Equipment | None:
-        """What the lift looked at is loaded with."""
-        return None if self.lift is None else self.now.equipment(self.lift.id)
+    def tool(self) -> Tool:
+        """The bar or belt of the lift looked at."""
+        return self.now.tool(self.lift.implement_id)
 
 
-def board(desk: Desk, platform_id: int, flight_id: int | None = None, lift_id: int | None = None) -> Board:
+def board(
+    desk: Desk, platform_id: int, flight_id: int | None = None, lift_id: int | None = None
+) -> Board | Bare:
     """Read a platform, looking at a flight and lift, or at those that are lifting."""
     with reading(desk.engine) as session:
         now = picture(session, platform_id)
         entry = last_undoable(session, now.meet_id, platform_id)
         undo = Undoable(key(entry), entry.what) if entry else None
-    flight, lift = _looked_at(now, flight_id, lift_id)
-    if flight is None or lift is None:
-        return Board(now, flight, lift, False, (), (), None, False, (), undo)
+    looked_at = _looked_at(now, flight_id, lift_id)
+    if looked_at is None:
+        return Bare(now)
+    flight, lift = looked_at
     programme, equipment = now.programme(lift.id), now.equipment(lift.id)
     order = programme.order(flight.id, lift.id)
     here = (now.flight_id, now.lift_id) == (flight.id, lift.id)
+    steps = _live_steps(now, order, equipment) if here else _fresh_steps(now, order, equipment, lift)
     return Board(
         now=now,
+        programme=programme,
         flight=flight,
         lift=lift,
+        equipment=equipment,
         here=here,
         order=order,
-        steps=tuple(
-            _live_steps(now, order, equipment) if here else _fresh_steps(now, order, equipment, lift)
-        ),
+        steps=tuple(steps),
         up=up_next(now.bar, order) if here else None,
         ask=here and must_ask(now.bar, order, equipment),
         no_opener=without_opener(programme.of_flight(flight.id), programme.of_lift(lift.id)),
@@ -100,7 +108,7 @@ def board(desk: Desk, platform_id: int, flight_id: int | None = None, lift_id: i
     )
 
 
-def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tuple[Flight | None, Lift | None]:
+def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tuple[Flight, Lift] | None:
     """The flight and lift asked for, if they go together; else those on the platform; else the first."""
     for wanted in ((flight_id, lift_id), (now.flight_id, now.lift_id)):
         for _, _, programme in now.sessions:
@@ -111,7 +119,7 @@ def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tupl
     for _, _, programme in now.sessions:
         if programme.flights and programme.lifts:
             return programme.flights[0], programme.lifts[0]
-    return None, None
+    return None
 
 
 def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment) -> Iterator[Step]:
@@ -188,20 +196,8 @@ def handled_by_chart(steps: Sequence[Step], equipment: Equipment) -> Handled | N
     return handled(by_chart)
 
 
-def is_up(one: Board, attempt_id: int) -> bool:
-    """Whether this attempt is the one that is up."""
-    return one.up is not None and one.up.attempt.id == attempt_id
-
-
-def hands_off(one: Board) -> bool:
-    """The bar is loaded: nothing may change on it."""
-    return one.now.bar.condition is Condition.LIFTING
-
-
 def lifted_last(one: Board) -> int | None:
     """The attempt whose lifter now hands in the next weight: the newest result of the lift looked at."""
-    if one.programme is None or one.lift is None or one.flight is None:
-        return None
     members = {lifter.id for lifter in one.programme.of_flight(one.flight.id)}
     done = [
         a

@@ -11,7 +11,7 @@ from sqlmodel import col, select
 
 from app.desk.attempts import Seen, declare, judge
 from app.desk.bar import bar_is_loaded, bring_flight, instruction_name
-from app.desk.board import board
+from app.desk.board import Bare, board
 from app.desk.entry import Desk
 from app.desk.roster import import_roster, meet_ids
 from app.desk.setup import add_platform, start_meet
@@ -69,8 +69,8 @@ def _find(now: Picture, flight: str, lift: str) -> tuple[int, int]:
 
 def _lift(desk: Desk, platform_id: int, line: dict[str, str]) -> None:
     one = board(desk, platform_id)
-    if one.up is None or one.programme is None or str(one.up.lifter.lot) != line["lot"]:
-        raise ValueError(f"The demo's file says lot {line['lot']}, but up is {one.up and one.up.lifter.lot}.")
+    if isinstance(one, Bare) or one.up is None or str(one.up.lifter.lot) != line["lot"]:
+        raise ValueError(f"The demo's file says that lot {line['lot']} is up, and the order says otherwise.")
     attempt = one.up.attempt
     bar_is_loaded(desk, platform_id, instruction_name(one.now.bar), who=WHO)
     judge(desk, platform_id, Seen(attempt.id, attempt.version), Result(line["result"]), who=WHO)
@@ -81,7 +81,7 @@ def _lift(desk: Desk, platform_id: int, line: dict[str, str]) -> None:
 
 def _following(desk: Desk, platform_id: int, attempt: Attempt) -> Attempt:
     one = board(desk, platform_id)
-    attempts = () if one.programme is None else one.programme.attempts
+    attempts = () if isinstance(one, Bare) else one.programme.attempts
     return next(
         a
         for a in attempts

@@ -14,13 +14,13 @@ from typing import Any
 
 from sqlmodel import Session
 
+from app.desk.wish import plan_request
 from app.loading.chart import loadable
 from app.loading.equipment import Equipment, Stack
 from app.loading.mass import show_mass
 from app.meet.horizon import horizon
 from app.meet.order import Turn
 from app.meet.platform import Bar, Condition, instruct, lifted, overtaken
-from app.desk.wish import plan_request
 from app.planning import Plan, plan
 from app.store.picture import Picture, faces, get, picture, store_bar
 from app.store.tables import PlatformRow

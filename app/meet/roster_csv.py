@@ -192,7 +192,7 @@ class _Line:
 
     def _lot(self) -> int | None:
         text = self.cell("lot")
-        if text.isascii() and text.isdigit() and 0 < int(text[:6]) and len(text) <= 5:
+        if text.isascii() and text.isdigit() and int(text[:6]) > 0 and len(text) <= 5:
             return int(text)
         self.complain(f"lot “{text}” is not a whole number from 1 to 99999.")
         return None

@@ -16,8 +16,6 @@ from app.web.words import side_words, stack_words, tool_words, whole_words
 
 def card_view(one: Board, round_number: int, *, now: datetime) -> CardView:
     """The card of a round; ``now`` is printed on it. Raises WrongLoad rather than print a wrong load."""
-    assert one.flight is not None and one.lift is not None and one.equipment is not None  # noqa: S101, PT018
-    tool = one.now.tool(one.lift.implement_id)
     steps = [step for step in one.steps if step.turn.attempt.number == round_number]
     rows = [_done_row(one, a, lifter) for a, lifter in _done(one, round_number)]
     rows += [_row(one, one.equipment, step, len(rows) + place) for place, step in enumerate(steps, start=1)]
@@ -26,20 +24,19 @@ def card_view(one: Board, round_number: int, *, now: datetime) -> CardView:
         title=f"{one.flight.name} · {one.lift.name} · round {round_number}",
         platform=one.now.platform,
         unit=one.now.unit,
-        side=side_words(tool),
-        implement=tool_words(tool, one.now.unit),
+        side=side_words(one.tool),
+        implement=tool_words(one.tool, one.now.unit),
         start=stack_words(steps[0].before) if steps else "empty",
         rows=tuple(rows),
         undeclared=_undeclared(one, round_number),
         revision=one.now.revision,
         printed=now.astimezone().strftime("%Y-%m-%d %H:%M"),
-        total=_total(steps, one.equipment, one.now.unit, side_words(tool)),
+        total=_total(steps, one.equipment, one.now.unit, side_words(one.tool)),
     )
 
 
 def _done(one: Board, round_number: int) -> list[tuple[Attempt, Lifter]]:
     """What has been lifted of this round already, in the order of its weights."""
-    assert one.flight is not None and one.lift is not None and one.programme is not None  # noqa: S101, PT018
     members = {lifter.id: lifter for lifter in one.programme.of_flight(one.flight.id)}
     done = [
         (a, members[a.lifter_id])
@@ -53,7 +50,6 @@ def _done(one: Board, round_number: int) -> list[tuple[Attempt, Lifter]]:
 
 
 def _done_row(one: Board, attempt: Attempt, lifter: Lifter) -> CardRow:
-    assert one.lift is not None  # noqa: S101 - a row belongs to a lift
     return CardRow(
         order="–",
         lot=str(lifter.lot),
@@ -70,8 +66,7 @@ def _done_row(one: Board, attempt: Attempt, lifter: Lifter) -> CardRow:
 
 
 def _row(one: Board, equipment: Equipment, step: Step, place: int) -> CardRow:
-    assert one.lift is not None  # noqa: S101 - a row belongs to a lift
-    turn, hands, tool = step.turn, step.hands, one.now.tool(one.lift.implement_id)
+    turn, hands = step.turn, step.hands
     stack: Stack = step.stack or ()
     if step.stack is not None:
         check_stack(equipment, stack, turn.weight, Order.HEAVIEST_INSIDE)
@@ -85,7 +80,7 @@ def _row(one: Board, equipment: Equipment, step: Step, place: int) -> CardRow:
         off=tuple(show_mass(face) for face in hands.off) if hands else (),
         on=tuple(show_mass(face) for face in hands.on) if hands else (),
         rack=one.now.racks.get((turn.lifter.id, one.lift.id), ""),
-        sum=whole_words(equipment, stack, tool) if step.stack is not None else "",
+        sum=whole_words(equipment, stack, one.tool) if step.stack is not None else "",
         note=_note(step),
     )
 
@@ -100,7 +95,6 @@ def _note(step: Step) -> str:
 
 def _undeclared(one: Board, round_number: int) -> tuple[CardRow, ...]:
     """Lifters with no weight and no default for this round: a blank line each."""
-    assert one.lift is not None and one.flight is not None and one.programme is not None  # noqa: S101, PT018
     known = {step.turn.lifter.id for step in one.steps if step.turn.attempt.number == round_number}
     known |= {lifter.id for _, lifter in _done(one, round_number)}
     return tuple(

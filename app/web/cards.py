@@ -8,7 +8,7 @@ from fastapi import APIRouter
 from starlette.requests import Request
 from starlette.responses import Response
 
-from app.desk.board import Board, board
+from app.desk.board import Bare, Board, board
 from app.meet.model import ROUNDS
 from app.web import htmx
 from app.web.card_view import card_view
@@ -34,7 +34,7 @@ def list_cards(request: Request, platform_id: int, desk: DeskDep, official: Offi
     return page("cards/list.html", frame=around, layout=htmx.layout(request), cards=_links(one), now=one.now)
 
 
-def _links(one: Board) -> list[CardLink]:
+def _links(one: Board | Bare) -> list[CardLink]:
     found = []
     for _, _, programme in one.now.sessions:
         for lift in programme.lifts:
@@ -58,7 +58,7 @@ def show_card(
 ) -> Response:
     """The swap list of one round, ready for the browser's print."""
     one = board(desk, platform_id, flight_id, lift_id)
-    if one.flight is None or one.lift is None or round_number not in ROUNDS:
+    if isinstance(one, Bare) or round_number not in ROUNDS:
         return htmx.go_to(request, f"/platforms/{platform_id}/cards")
     around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Cards")
     view = card_view(one, round_number, now=desk.clock())

@@ -9,10 +9,10 @@ from starlette.requests import Request
 from starlette.responses import Response
 
 from app.desk import bar
-from app.desk.board import board
+from app.desk.board import Bare, board
 from app.desk.entry import Desk
 from app.web import htmx
-from app.web.crew_view import crew_view
+from app.web.crew_view import bare_crew_view, crew_view
 from app.web.house import DeskDep, OfficialDep, frame, page, who
 
 router = APIRouter(prefix="/platforms/{platform_id}")
@@ -29,7 +29,8 @@ def _screen(request: Request, desk: Desk, platform_id: int, official: str) -> Re
     one = board(desk, platform_id)
     name = "crew/_now.html" if htmx.wants_fragment(request) else "crew/page.html"
     around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Crew")
-    return page(name, frame=around, view=crew_view(one))
+    view = bare_crew_view(one.now) if isinstance(one, Bare) else crew_view(one)
+    return page(name, frame=around, view=view)
 
 
 @router.post("/loaded")

@@ -13,14 +13,34 @@ from app.loading.stack import WrongLoad
 from app.meet.model import attempt_name
 from app.meet.order import Turn
 from app.meet.platform import Condition
+from app.store.picture import Picture
 from app.web.views import ChangeView, CrewState, CrewView, RackView, ThenView, UpView
-from app.web.words import end_view, plate_views, side_words, stack_words
+from app.web.words import clock_words, end_view, plate_views, side_words, stack_words
 
 THEN = 3
 WANTED_WITHIN = 2
+NO_FLIGHT = "The table has not brought a flight to this platform yet."
 SHOWS_HAND = ("changing", "unknown", "lifting", "changed")
 
 log = logging.getLogger("platewright.wrong_load")
+
+
+def bare_crew_view(now: Picture) -> CrewView:
+    """The screen of a platform without flights."""
+    return CrewView(
+        platform_id=now.platform_id,
+        platform=now.platform,
+        unit=now.unit,
+        revision=now.revision,
+        as_of=clock_words(now.changed_at),
+        state="idle",
+        up=None,
+        change=None,
+        rack=(),
+        then=(),
+        keep_out=(),
+        message=NO_FLIGHT,
+    )
 
 
 def crew_view(one: Board) -> CrewView:
@@ -42,7 +62,7 @@ def crew_view(one: Board) -> CrewView:
         platform=one.now.platform,
         unit=one.now.unit,
         revision=one.now.revision,
-        as_of=one.now.changed_at.astimezone().strftime("%H:%M:%S"),
+        as_of=clock_words(one.now.changed_at),
         state=state,
         up=_up(one, state),
         change=change,
@@ -57,37 +77,38 @@ def crew_view(one: Board) -> CrewView:
 
 
 def _state(one: Board) -> tuple[CrewState, str]:
+    """What fills the screen, and the one sentence it may need."""
     bar = one.now.bar
-    if one.now.flight_id is None or one.lift is None or not one.here:
-        return "idle", "The table has not brought a flight to this platform yet."
+    if not one.here:
+        return "idle", NO_FLIGHT
     if bar.condition is Condition.HOLD:
         return "hold", "Nothing moves until the table says so."
     if one.ask:
         return "changed", _why_asked(one)
-    if bar.condition is Condition.CHANGING:
-        if bar.hand is not None and bar.hand.before is None:
-            return "unknown", "Nobody knows what is on the bar. Strip it, then build this from empty."
-        return "changing", ""
+    if bar.hand is None:
+        return _resting(one)
     if bar.condition is Condition.LIFTING:
         return "lifting", ""
+    if bar.hand.before is None:
+        return "unknown", "Nobody knows what is on the bar. Strip it, then build this from empty."
+    return "changing", ""
+
+
+def _resting(one: Board) -> tuple[CrewState, str]:
+    """No change is out: nobody is left, or the next weight is not there to be loaded."""
     if one.up is None:
         return "finished", _finished(one)
+    weight = show_mass(one.up.weight)
     if one.up.assumed:
-        return "waiting", f"{one.up.lifter.name} has not handed in a weight. By the rule it will be " + (
-            f"{show_mass(one.up.weight)} {one.now.unit}."
-        )
-    return (
-        "waiting",
-        f"{show_mass(one.up.weight)} cannot be made with the plates here. The table has been told.",
-    )
+        name, unit = one.up.lifter.name, one.now.unit
+        return "waiting", f"{name} has not handed in a weight. By the rule it will be {weight} {unit}."
+    return "waiting", f"{weight} cannot be made with the plates here. The table has been told."
 
 
 def _finished(one: Board) -> str:
     if one.no_opener:
         return f"{len(one.no_opener)} lifters of this flight have no opener. The table is asked for them."
-    return (
-        f"{one.flight.name if one.flight else ''} has finished this lift. The table brings the next flight."
-    )
+    return f"{one.flight.name} has finished this lift. The table brings the next flight."
 
 
 def _why_asked(one: Board) -> str:
@@ -102,7 +123,7 @@ def _why_asked(one: Board) -> str:
 def _shown_turn(one: Board) -> Turn | None:
     """The turn that the instruction out was for, at the weight it was shown with."""
     hand = one.now.bar.hand
-    if hand is None or one.programme is None:
+    if hand is None:
         return one.up
     attempt = next((a for a in one.programme.attempts if a.id == hand.attempt_id), None)
     lifter = next((x for x in one.programme.lifters if attempt and x.id == attempt.lifter_id), None)
@@ -111,7 +132,7 @@ def _shown_turn(one: Board) -> Turn | None:
 
 def _up(one: Board, state: CrewState) -> UpView | None:
     turn = _shown_turn(one) if state in SHOWS_HAND else one.up
-    if turn is None or one.lift is None or one.flight is None:
+    if turn is None:
         return None
     return UpView(
         lifter=turn.lifter.name,
@@ -132,15 +153,16 @@ def _change_in_hand(one: Board) -> ChangeView | None:
 def change_view(one: Board, step: Step) -> ChangeView | None:
     """A step as what the hands do; raises WrongLoad rather than show a wrong load."""
     hands = step.hands
-    if one.lift is None or one.equipment is None or step.stack is None or hands is None:
+    if step.stack is None or hands is None:
         return None
-    tool = one.now.tool(one.lift.implement_id)
     kept = len(step.stack) - len(hands.on)
-    end = end_view(one.now, tool, one.equipment, step.stack, step.turn.weight, kept, Order.HEAVIEST_INSIDE)
+    end = end_view(
+        one.now, one.tool, one.equipment, step.stack, step.turn.weight, kept, Order.HEAVIEST_INSIDE
+    )
     return ChangeView(
         off=() if step.before is None else plate_views(hands.off, one.now),
         on=plate_views(hands.on, one.now),
-        side=side_words(tool),
+        side=side_words(one.tool),
         from_empty=step.before is None,
         end=end,
     )
@@ -149,18 +171,16 @@ def change_view(one: Board, step: Step) -> ChangeView | None:
 def _rack(one: Board) -> tuple[RackView, ...]:
     """The rack only where it differs from the lifter before."""
     turn = _shown_turn(one)
-    if turn is None or one.lift is None:
+    if turn is None:
         return ()
     new = one.now.racks.get((turn.lifter.id, one.lift.id), "")
     old = one.now.racks.get((_before_id(one, turn), one.lift.id), "")
-    name = "Rack" if one.now.tool(one.lift.implement_id).kind == "bar" else "Chain"
+    name = "Rack" if one.tool.kind == "bar" else "Chain"
     return (RackView(name, old, new),) if new and new != old else ()
 
 
 def _before_id(one: Board, turn: Turn) -> int:
     """Who lifted last in this flight and lift; 0 for nobody."""
-    if one.programme is None or one.lift is None:
-        return 0
     members = {x.id: x.lot for x in one.programme.of_flight(turn.lifter.flight_id)}
     done = [
         a

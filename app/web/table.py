@@ -10,7 +10,7 @@ from starlette.responses import Response
 
 from app.desk import attempts, bar, undo
 from app.desk.attempts import Seen
-from app.desk.board import Board, board
+from app.desk.board import Bare, Board, board
 from app.desk.entry import Desk
 from app.desk.errors import DeskError
 from app.meet.model import Result
@@ -39,7 +39,7 @@ def show_table(
 
 def render(
     request: Request,
-    one: Board,
+    one: Board | Bare,
     official: str,
     said: str = "",
     refused: str = "",
@@ -49,7 +49,7 @@ def render(
 ) -> Response:
     """The page, or its content for a swap; ``refused`` stands on the line of attempt ``at`` with what was typed."""
     around = frame(one.now.meet, official, one.now.meet_id, one.now.platform_id, "Table")
-    if one.flight is None or one.lift is None:
+    if isinstance(one, Bare):
         return page("table/empty.html", status, frame=around, layout=htmx.layout(request), now=one.now)
     swapped = htmx.wants_fragment(request)
     return page(

@@ -12,7 +12,7 @@ from app.meet.model import RESULT_WORDS, ROUNDS, Attempt, Lifter, Result, attemp
 from app.meet.order import default_weight
 from app.meet.platform import Condition
 from app.web.views import PlateView
-from app.web.words import plate_views, side_words, stack_words
+from app.web.words import clock_words, plate_views, side_words, stack_words
 
 
 @dataclass(frozen=True, slots=True)
@@ -119,9 +119,7 @@ class TableView:
 
 def table_view(one: Board, focus: int = 0) -> TableView:
     """The Table at one revision; ``focus`` names an attempt to put the cursor on, 0 for the usual one."""
-    assert one.flight is not None and one.lift is not None and one.programme is not None  # noqa: S101, PT018
     now, bar = one.now, one.now.bar
-    tool = now.tool(one.lift.implement_id)
     rows = _order_rows(one)
     return TableView(
         meet_id=now.meet_id,
@@ -129,7 +127,7 @@ def table_view(one: Board, focus: int = 0) -> TableView:
         platform=now.platform,
         unit=now.unit,
         revision=now.revision,
-        as_of=now.changed_at.astimezone().strftime("%H:%M:%S"),
+        as_of=clock_words(now.changed_at),
         flight_id=one.flight.id,
         lift_id=one.lift.id,
         title=f"{one.flight.name} · {one.lift.name}",
@@ -144,7 +142,7 @@ def table_view(one: Board, focus: int = 0) -> TableView:
         shown=instruction_name(bar),
         bar_before=stack_words(bar.hand.before) if bar.hand else "",
         bar_shown=stack_words(bar.hand.stack) if bar.hand else "",
-        side=side_words(tool),
+        side=side_words(one.tool),
         order=rows,
         score=tuple(_score_row(one, lifter) for lifter in one.programme.of_flight(one.flight.id)),
         no_opener=tuple(_no_opener_row(one, lifter) for lifter in one.no_opener),
@@ -175,7 +173,7 @@ def _here_now(one: Board) -> str:
 
 
 def _up_line(one: Board) -> UpLine | None:
-    if one.up is None or one.lift is None:
+    if one.up is None:
         return None
     turn = one.up
     return UpLine(
@@ -220,12 +218,12 @@ def _who(one: Board, place: int) -> str:
 
 
 def _usual_focus(one: Board, rows: tuple[OrderRow, ...]) -> int:
-    """The next attempt of whoever has just lifted, if its weight is still wanted; else the first one wanted."""
+    """The next attempt of whoever has just lifted, if its weight is wanted; else the first wanted."""
     wanted = [
         row.attempt_id for row in (*rows, *(_no_opener_row(one, x) for x in one.no_opener)) if not row.weight
     ]
     last = lifted_last(one)
-    if last is not None and one.programme is not None:
+    if last is not None:
         done = next(a for a in one.programme.attempts if a.id == last)
         after = [
             a.id
@@ -247,7 +245,6 @@ def _order_rows(one: Board) -> tuple[OrderRow, ...]:
 
 
 def _order_row(one: Board, step: Step, place: int, new_round: bool) -> OrderRow:  # noqa: FBT001 - one flag of a row
-    assert one.lift is not None  # noqa: S101 - rows belong to a lift
     turn, hands = step.turn, step.hands
     up = one.here and one.up is not None and one.up.attempt.id == turn.attempt.id
     return OrderRow(
@@ -281,7 +278,6 @@ def _change_words(step: Step, *, ask: bool) -> str:
 
 
 def _no_opener_row(one: Board, lifter: Lifter) -> OrderRow:
-    assert one.lift is not None and one.programme is not None  # noqa: S101, PT018 - a lifter of a lift
     opener = next(a for a in one.programme.of_lift(one.lift.id)[lifter.id] if a.number == 1)
     return OrderRow(
         attempt_id=opener.id,
@@ -304,7 +300,6 @@ def _no_opener_row(one: Board, lifter: Lifter) -> OrderRow:
 
 
 def _score_row(one: Board, lifter: Lifter) -> ScoreRow:
-    assert one.lift is not None and one.programme is not None  # noqa: S101, PT018 - a lifter of a lift
     attempts = {a.number: a for a in one.programme.of_lift(one.lift.id).get(lifter.id, ())}
     best = max(
         (a.weight for a in attempts.values() if a.result is Result.GOOD and a.weight is not None),

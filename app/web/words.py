@@ -1,8 +1,9 @@
-"""Numbers and loads as people read them: every stack passes the independent re-sum before it becomes words."""
+"""Numbers and loads as people read them; a stack passes the independent re-sum before it becomes words."""
 
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
+from datetime import datetime
 from fractions import Fraction
 
 from app.loading.equipment import Equipment, Order, Stack
@@ -56,6 +57,11 @@ def end_view(
         sum=sum_words(stack, tool),
         whole=whole_words(equipment, stack, tool),
     )
+
+
+def clock_words(at: datetime) -> str:
+    """A moment as the hall's clock shows it: ``10:42:17`` in the time zone of the machine."""
+    return at.astimezone().strftime("%H:%M:%S")
 
 
 def count_words(plates: int, collar: bool) -> str:  # noqa: FBT001 - a count and its companion
