@@ -4,6 +4,7 @@
   "use strict";
   const QUIET_LIMIT_MS = 5000; // the server ticks every 3 s
   const BEHIND_LIMIT_MS = 3000; // a revision was announced and has not been shown
+  const ASK_AGAIN_MS = 2000;
   const ERROR_STAYS_MS = 8000;
   const THEME = "platewright-theme";
   const root = document.documentElement;
@@ -34,6 +35,7 @@
     let changed = null; // when the present revision was first heard of
     let announced = null;
     let announcedAt = heard;
+    let askedAt = 0;
 
     const shown = () => document.querySelector("[data-revision]")?.dataset.revision ?? null;
     const note = () => { heard = Date.now(); look(); };
@@ -41,7 +43,8 @@
     live.addEventListener("tick", note);
     live.addEventListener("revision", (event) => {
       const revision = event.detail?.data;
-      if (revision !== undefined && revision !== announced) {
+      if (revision === undefined) return; // asked for below: no word from the server
+      if (String(revision) !== announced) {
         announced = String(revision);
         announcedAt = changed = Date.now();
       }
@@ -56,7 +59,10 @@
       else if (behind) text = `There is news since ${clock(announcedAt)} that could not be fetched. What you see is old.`;
       if (band.textContent !== text) band.textContent = text; // an unchanged alert is not read out again
       band.hidden = text === "";
-      if (behind && now - heard <= QUIET_LIMIT_MS) live.dispatchEvent(new CustomEvent("revision")); // ask again
+      if (behind && now - heard <= QUIET_LIMIT_MS && now - askedAt > ASK_AGAIN_MS) {
+        askedAt = now;
+        live.dispatchEvent(new CustomEvent("revision")); // every region asks for its fragment again
+      }
       const age = document.querySelector("[data-age]");
       if (age) {
         const words = changed === null ? "" : `connected, last change ${inWords(now - changed)}`;

@@ -26,7 +26,7 @@ from app.web.drawing import (
 )
 from app.web.views import EndView, PlateView
 
-# A calibrated steel set, from memory (diameter and thickness in mm); only the order of the sizes matters here.
+# A calibrated steel set, from memory (diameter, thickness in mm); only the order of the sizes matters here.
 SIZES = {"25": (450, 27), "20": (450, 22.5), "15": (400, 21), "10": (325, 21), "5": (228, 21)}
 SIZES |= {"2.5": (190, 16), "1.25": (160, 12), "0.25": (112, 6)}
 
