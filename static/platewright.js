@@ -23,7 +23,7 @@
 
   function inWords(ms) {
     const minutes = Math.floor(ms / 60000);
-    if (minutes < 1) return "less than a minute ago";
+    if (minutes < 1) return "just now";
     if (minutes < 60) return minutes === 1 ? "1 minute ago" : `${minutes} minutes ago`;
     const hours = Math.floor(minutes / 60);
     return hours === 1 ? "more than 1 hour ago" : `more than ${hours} hours ago`;
@@ -65,7 +65,7 @@
       }
       const age = document.querySelector("[data-age]");
       if (age) {
-        const words = changed === null ? "" : `connected, last change ${inWords(now - changed)}`;
+        const words = changed === null ? "" : `connected, changed ${inWords(now - changed)}`;
         const next = text ? "not up to date" : words || "connecting";
         if (age.textContent !== next) age.textContent = next;
       }
