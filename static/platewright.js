@@ -5,6 +5,7 @@
   const QUIET_LIMIT_MS = 5000; // the server ticks every 3 s
   const BEHIND_LIMIT_MS = 3000; // a revision was announced and has not been shown
   const ASK_AGAIN_MS = 2000;
+  const DEAF_MS = 700;
   const ERROR_STAYS_MS = 8000;
   const THEME = "platewright-theme";
   const root = document.documentElement;
@@ -94,6 +95,20 @@
     if (next && next !== document.activeElement) next.focus({ preventScroll: true });
   }
 
+  /* A tap meant for what stood here a moment ago must not answer what stands here now: when the instruction has
+     just been replaced under the finger, buttons stay deaf for the time a person needs to see it. */
+  function guardTaps(crew) {
+    const instruction = () => { const now = crew.querySelector(".now"); return now ? `${now.dataset.state} ${now.dataset.shown}` : ""; };
+    let shown = instruction();
+    let replacedAt = 0;
+    document.addEventListener("htmx:after:swap", () => {
+      if (instruction() !== shown) { shown = instruction(); replacedAt = Date.now(); }
+    });
+    crew.addEventListener("click", (event) => {
+      if (Date.now() - replacedAt < DEAF_MS && event.target.closest("form")) { event.preventDefault(); event.stopPropagation(); }
+    }, true);
+  }
+
   function clearOldError() {
     const box = document.getElementById("crew-error");
     if (!box || !box.textContent.trim()) return;
@@ -111,6 +126,7 @@
     const live = document.getElementById("live");
     if (live && document.getElementById("stale")) watch(live);
     if (document.body.hasAttribute("data-keep-awake")) stayAwake();
+    if (document.getElementById("crew")) guardTaps(document.getElementById("crew"));
     if (document.getElementById("crew-error")) setInterval(clearOldError, 1000);
   });
 })();
