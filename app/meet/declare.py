@@ -31,15 +31,18 @@ class Allowed:
 Decision = Allowed | Refused
 
 HEAVIEST = Fraction(2000)  # more than any bar has carried; a slip of the finger, not a declaration
+MOST_SHOWN = 40  # letters of a mistyped weight that are repeated to whoever typed it
 LOOK_AROUND = 200  # steps to look up and down for a weight that can be made
 
 
 def read_weight(text: str) -> Allowed | Refused:
     """The typed text as an exact mass; a decimal comma is read as a point."""
+    text = text.strip()
     try:
-        weight = parse_mass(text.strip().replace(",", "."))
+        weight = parse_mass(text.replace(",", "."))
     except ValueError:
-        return Refused(f"“{text.strip()}” is not a weight. Type a number such as 142.5.")
+        shown = text if len(text) <= MOST_SHOWN else text[:MOST_SHOWN] + "…"
+        return Refused(f"“{shown}” is not a weight. Type a number such as 142.5.")
     if weight < 0:
         return Refused("A weight cannot be less than 0.")
     if weight > HEAVIEST:
@@ -63,34 +66,35 @@ def decide(
     """
     if attempt.result is not Result.OPEN:
         return Refused("This attempt has been lifted. Undo its result first, or correct the result.")
-    shown = f"{show_mass(weight)} {unit}"
-    if weight < equipment.base_mass:
-        return Refused(
-            f"{shown} is lighter than the bar with its collars, {show_mass(equipment.base_mass)} {unit}.",
-            above=equipment.base_mass,
-        )
-    if weight % step:
-        below, above = _makeable_near(weight, step, equipment)
-        return Refused(f"{shown} is not a multiple of {show_mass(step)}.", below, above)
     lifted = [done.weight for done in earlier if done.weight is not None and done.result is not Result.OPEN]
-    floor = max(lifted, default=None)
-    if floor is not None and weight < floor:
-        return Refused(f"{shown} is lower than this lifter's last attempt, {show_mass(floor)}.", above=floor)
-    if loadable(equipment, weight):
+    least = max([equipment.base_mass, *lifted])
+    if weight >= least and weight % step == 0 and loadable(equipment, weight):
         return Allowed(weight)
-    below, above = _makeable_near(weight, step, equipment)
-    return Refused(f"{shown} cannot be made with the plates at this platform.", below, above)
+    because = f"{show_mass(weight)} {unit} {_why_not(weight, least, step, equipment, unit)}."
+    return Refused(because, *_makeable_near(weight, least, step, equipment))
+
+
+def _why_not(weight: Fraction, least: Fraction, step: Fraction, equipment: Equipment, unit: str) -> str:
+    base = equipment.base_mass
+    if weight < base:
+        return f"is lighter than the bar with its collars, {show_mass(base)} {unit}"
+    if weight % step:
+        return f"is not a multiple of {show_mass(step)}"
+    if weight < least:
+        return f"is lower than this lifter's last attempt, {show_mass(least)}"
+    return "cannot be made with the plates at this platform"
 
 
 def _makeable_near(
-    weight: Fraction, step: Fraction, equipment: Equipment
+    weight: Fraction, least: Fraction, step: Fraction, equipment: Equipment
 ) -> tuple[Fraction | None, Fraction | None]:
-    """The nearest multiples of the step below and above that the plates make; None where there is none."""
-    multiple = weight // step * step
-    lower = (multiple - step * k for k in range(LOOK_AROUND) if multiple - step * k < weight)
-    upper = (multiple + step * k for k in range(1, LOOK_AROUND))
-    below = next((mass for mass in lower if mass >= equipment.base_mass and loadable(equipment, mass)), None)
-    return below, next((mass for mass in upper if loadable(equipment, mass)), None)
+    """The nearest weights below and above that may be declared: multiples of the step, not under ``least``,
+    that the plates make; None where there is none."""
+    lower = (weight // step * step - step * k for k in range(LOOK_AROUND))
+    first = -(-max(weight, least) // step) * step
+    upper = (first + step * k for k in range(LOOK_AROUND))
+    below = next((mass for mass in lower if least <= mass < weight and loadable(equipment, mass)), None)
+    return below, next((mass for mass in upper if mass > weight and loadable(equipment, mass)), None)
 
 
 def sentence(refused: Refused) -> str:

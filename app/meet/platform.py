@@ -117,5 +117,7 @@ def hold(bar: Bar) -> Bar:
 
 
 def resume(bar: Bar) -> Bar:
-    """After a hold the same change goes on, if one was out."""
+    """After a hold the same change goes on, if one was out; where there is no hold, nothing happens."""
+    if bar.condition is not Condition.HOLD:
+        return bar
     return replace(bar, condition=Condition.CHANGING if bar.hand else Condition.IDLE)

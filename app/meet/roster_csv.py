@@ -102,12 +102,17 @@ def write_roster(entries: Sequence[Entry], lifts: Sequence[str]) -> str:
 
 def _plain(text: str) -> str:
     """Text that no spreadsheet will run: a leading = + - @ is set off by an apostrophe, taken off on reading."""
-    return f"'{text}" if text[:1] in tuple("=+-@") else text
+    return f"'{text}" if _would_run(text) else text
 
 
 def _bare(text: str) -> str:
     """Undoes :func:`_plain`, and only that: a name may begin with an apostrophe of its own."""
-    return text[1:] if text[:1] == "'" and text[1:2] in tuple("=+-@") else text
+    return text[1:] if text[:1] == "'" and _would_run(text) else text
+
+
+def _would_run(text: str) -> bool:
+    """Also behind apostrophes: else one that stands before a formula already would be taken for ours."""
+    return text.lstrip("'")[:1] in tuple("=+-@")
 
 
 def _lift_columns(lifts: Sequence[str]) -> list[str]:
@@ -176,8 +181,9 @@ class _Line:
             if opener is not None:
                 openers[lift] = opener
             rack = _bare(self.cell(f"{lift} rack"))
+            self._check_length(f"{lift} rack", rack)
             if rack:
-                racks[lift] = rack[:MOST_LETTERS]
+                racks[lift] = rack
         if self.wrong or lot is None:
             return None
         return Entry(name, lot, flight, body_weight, openers, racks, self.number)
@@ -186,9 +192,12 @@ class _Line:
         text = _bare(self.cell(name))
         if not text:
             self.complain(f"{name} is empty.")
-        elif len(text) > MOST_LETTERS:
-            self.complain(f"{name} is longer than {MOST_LETTERS} letters.")
+        self._check_length(name, text)
         return text
+
+    def _check_length(self, name: str, text: str) -> None:
+        if len(text) > MOST_LETTERS:
+            self.complain(f"{name} is longer than {MOST_LETTERS} letters.")
 
     def _lot(self) -> int | None:
         text = self.cell("lot")
