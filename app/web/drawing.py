@@ -111,33 +111,48 @@ class Drawing:
 
 def draw(end: EndView) -> Drawing:
     """Lay out one end of a bar, or the one bundle of a belt, inside to outside from left to right."""
-    belt = end.implement == "belt"
-    top = BELT_TOP if belt else TOP
-    tallest = max([FULL_MM, *(plate.diameter_mm for plate in end.plates)])
-    middle = top + HEIGHT_UNITS // 2
-    left = MARGIN + SHAFT_UNITS
-    across = _scale_across(end)
-    shoulder = None if belt else _centred(left, left + round(SHOULDER_MM * across), middle, SHOULDER_HEIGHT)
-    start = left if shoulder is None else shoulder.right
+    return _draw_belt(end) if end.implement == "belt" else _draw_bar(end)
 
-    boxes = _plate_boxes(end.plates, start, middle, across, HEIGHT_UNITS / tallest)
-    outer = boxes[-1].right if boxes else start
-    collar = None
-    if end.collar is not None and not belt:
+
+def _draw_bar(end: EndView) -> Drawing:
+    middle, left, across = TOP + HEIGHT_UNITS // 2, MARGIN + SHAFT_UNITS, _scale_across(end)
+    shoulder = _centred(left, left + round(SHOULDER_MM * across), middle, SHOULDER_HEIGHT)
+    boxes = _plate_boxes(end.plates, shoulder.right, middle, across)
+    outer = boxes[-1].right if boxes else shoulder.right
+    collar, tip = None, outer + STUB_UNITS
+    if end.collar is not None:
         collar = _centred(outer, outer + round(COLLAR_MM * across), middle, COLLAR_HEIGHT)
-    tip = max(collar.right + STUB_UNITS, collar.x + COLLAR_WORD) if collar else outer + STUB_UNITS
-    plates = tuple(_drawn(plate, box) for plate, box in zip(end.plates, boxes, strict=True))
+        tip = max(collar.right + STUB_UNITS, outer + COLLAR_WORD)
     return Drawing(
-        width=tip + MARGIN + (SHAFT_UNITS - STUB_UNITS if belt else 0),
-        height=top + HEIGHT_UNITS + BELOW,
+        width=tip + MARGIN,
+        height=TOP + HEIGHT_UNITS + BELOW,
         middle=middle,
-        plates=plates,
-        shaft=None if belt else _centred(0, left, middle, SHAFT_HEIGHT),
+        plates=_drawn(end.plates, boxes),
+        shaft=_centred(0, left, middle, SHAFT_HEIGHT),
         shoulder=shoulder,
-        sleeve=None if belt else _centred(start, tip, middle, SLEEVE_HEIGHT),
+        sleeve=_centred(shoulder.right, tip, middle, SLEEVE_HEIGHT),
         collar=collar,
         collar_mass=end.collar or "",
-        chain=_chain(boxes, left, outer, middle) if belt else (),
+        chain=(),
+        words=_words(end),
+    )
+
+
+def _draw_belt(end: EndView) -> Drawing:
+    middle, left = BELT_TOP + HEIGHT_UNITS // 2, MARGIN + SHAFT_UNITS
+    boxes = _plate_boxes(end.plates, left, middle, _scale_across(end))
+    outer = boxes[-1].right if boxes else left
+    return Drawing(
+        width=outer + SHAFT_UNITS + MARGIN,
+        height=BELT_TOP + HEIGHT_UNITS + BELOW,
+        middle=middle,
+        plates=_drawn(end.plates, boxes),
+        shaft=None,
+        shoulder=None,
+        sleeve=None,
+        collar=None,
+        collar_mass="",
+        chain=_chain(boxes, left, outer, middle),
         words=_words(end),
     )
 
@@ -154,9 +169,8 @@ def _centred(left: int, right: int, middle: int, height: int) -> Box:
     return Box(x=left, y=middle - height // 2, width=right - left, height=height)
 
 
-def _plate_boxes(
-    plates: Sequence[PlateView], start: int, middle: int, across: float, upright: float
-) -> list[Box]:
+def _plate_boxes(plates: Sequence[PlateView], start: int, middle: int, across: float) -> list[Box]:
+    upright = HEIGHT_UNITS / max([FULL_MM, *(plate.diameter_mm for plate in plates)])
     boxes: list[Box] = []
     edge = float(start)
     for plate in plates:
@@ -166,13 +180,10 @@ def _plate_boxes(
     return boxes
 
 
-def _drawn(plate: PlateView, box: Box) -> DrawnPlate:
-    return DrawnPlate(
-        box=box,
-        colour=plate.colour,
-        label=fit_label(plate.face, box),
-        fresh=plate.fresh,
-        face_in=plate.face_in,
+def _drawn(plates: Sequence[PlateView], boxes: Sequence[Box]) -> tuple[DrawnPlate, ...]:
+    return tuple(
+        DrawnPlate(box, plate.colour, fit_label(plate.face, box), plate.fresh, plate.face_in)
+        for plate, box in zip(plates, boxes, strict=True)
     )
 
 
