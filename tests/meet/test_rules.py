@@ -106,7 +106,8 @@ def test_a_meet_in_pounds_starts_from_pounds() -> None:
     ("values", "sentences"),
     [
         ({"stepp": "2.5"}, ["“stepp” is not a setting of the rules."]),
-        ({"preset": "ladder"}, ["“ladder” is no set of rules to start from. There are: rounds-bar, rising-bar, rounds-belt."]),
+        ({"preset": "ladder"},
+         ["“ladder” is no set of rules to start from. There are: rounds-bar, rising-bar, rounds-belt."]),
         ({"step": "two"}, ["Step: “two” is not a weight. Type a number such as 2.5."]),
         ({"step": "80"}, ["Step: 80 must be from 0 to 50."]),
         ({"step": "0"}, ["A step must be more than 0."]),
