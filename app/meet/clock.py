@@ -157,7 +157,7 @@ def pace(
 
     The forecast weighs the plan as ``PLAN_COUNTS_FOR`` attempts against those measured, so that the first
     attempts do not throw it about; after thirty it is the measured pace but for a seventh. Planned pace:
-    60 to 75 s an attempt (``trade.md`` A2; school meets plan 60 s).
+    60 to 75 s an attempt (``trade.md``, one attempt cycle; school meets plan 60 s).
     """
     spent = now - started - breaks_taken
     planned = timedelta(seconds=float(planned_seconds * done))

@@ -7,7 +7,7 @@ weight and attempt number first: from memory; ``figures.md`` 2).
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
@@ -45,25 +45,20 @@ def rising_order(
     people = list(lifters)
     taken = _sequence(people, attempts, lifted)
     bar = _bar_now(attempts)
-    waiting: dict[int, _Place] = {}
-    for lifter in people:
-        place = _first(lifter, attempts.get(lifter.id, ()), rules, taken, bar)
-        if place is not None:
-            waiting[lifter.id] = place
-    order: list[Turn] = []
-    clock = len(taken)
+    places = (_first(lifter, attempts.get(lifter.id, ()), rules, taken, bar) for lifter in people)
+    return tuple(_calls([place for place in places if place is not None], rules, bar, len(taken)))
+
+
+def _calls(waiting: list[_Place], rules: Rules, bar: Fraction, rank: int) -> Iterator[Turn]:
+    """The least of those waiting, then the next attempt of that lifter joins them."""
     while waiting:
-        called = min(waiting.values(), key=lambda place: _key(place, rules))
-        order.append(called.turn)
+        called = min(waiting, key=lambda place: _key(place, rules))
+        yield called.turn
         bar = max(bar, called.turn.weight)
-        place = _next(called, rules, clock, bar)
-        clock += 1
-        if place is None:
-            del waiting[called.turn.lifter.id]
-        else:
-            waiting[called.turn.lifter.id] = place
-        waiting = {key: _lifted_to(one, bar) for key, one in waiting.items()}
-    return tuple(order)
+        following = _next(called, rules, rank, bar)
+        rank += 1
+        waiting = [_lifted_to(place, bar) for place in waiting if place is not called]
+        waiting += [following] if following is not None else []
 
 
 def follows_self(last_lifter_id: int | None, turn: Turn) -> bool:

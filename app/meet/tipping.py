@@ -13,7 +13,7 @@ from fractions import Fraction
 
 from app.loading.equipment import Collar, Equipment, Stack
 
-SHOULDER_MM = Fraction(685)  # middle of the bar to the first plate: 1310 / 2 + 30 (IWF bar, second-hand; V7)
+SHOULDER_MM = Fraction(685)  # middle of the bar to the first plate: 1310 / 2 + 30 (IWF bar, second-hand)
 LITTLE_MARGIN = Fraction(9, 10)  # of the moment that turns it; a judgement, no published figure
 
 
