@@ -103,10 +103,9 @@ def _weights(equipment: Equipment) -> frozenset[Fraction]:
     """Every weight that can be made, bare bar included."""
     scale, faces, counts = _whole(equipment)
     room = equipment.room_mm
-    plates = _heaviest_first(equipment)
-    thickness = [plate.thickness_mm or Fraction(0) if room is not None else Fraction(0) for plate in plates]
-    thinnest = {0: Fraction(0)}  # thinnest[m] = least millimetres that make the mass m at one end
-    for face, count, width in zip(faces, counts, thickness, strict=True):
+    widths, most = _whole_widths(equipment) if room is not None else ([0] * len(faces), 0)
+    thinnest = {0: 0}  # thinnest[m] = least width that makes the mass m at one end
+    for face, count, width in zip(faces, counts, widths, strict=True):
         for mass, taken in list(thinnest.items()):
             for pieces in range(1, count + 1):
                 made, wide = mass + pieces * face, taken + pieces * width
@@ -116,7 +115,13 @@ def _weights(equipment: Equipment) -> frozenset[Fraction]:
             raise TooManyWeights("These plates make more different weights than can be searched.")
     ends = equipment.implement.ends
     return frozenset(
-        equipment.base_mass + ends * Fraction(mass, scale)
-        for mass, wide in thinnest.items()
-        if room is None or wide <= room
+        equipment.base_mass + ends * Fraction(mass, scale) for mass, wide in thinnest.items() if wide <= most
     )
+
+
+def _whole_widths(equipment: Equipment) -> tuple[list[int], int]:
+    """The plates' thicknesses, heaviest plate first, and the room, as whole numbers of one common step."""
+    room = equipment.room_mm or Fraction(0)
+    widths = [plate.thickness_mm or Fraction(0) for plate in _heaviest_first(equipment)]
+    parts = lcm(room.denominator, *(width.denominator for width in widths))
+    return [int(width * parts) for width in widths], int(room * parts)

@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from app.planning.comfort import keep_comfortable
 from app.planning.counts import Ints
 from app.planning.kit import Kit
-from app.planning.request import Access, Comfort, ComfortBy, Order, PlanRequest
+from app.planning.request import Comfort, ComfortBy, Order, PlanRequest
 from app.planning.smaller import Alphabet, Codes, Places
 
 Family = tuple[Codes, Places]
@@ -34,26 +34,32 @@ def order_matters(request: PlanRequest) -> bool:
     return rims and request.order is not Order.WIDEST_INSIDE
 
 
-def one_order_is_enough(request: PlanRequest) -> bool:
-    """Whether one stack for each count vector is as good as all its orders.
+def by_width(request: PlanRequest) -> bool:
+    """Whether stacks are best compared with the widest inside: the order asks for it, or rims or threading
+    count, which that order makes least (see :func:`inside_first`)."""
+    return request.order in {Order.WIDEST_INSIDE, Order.NO_VALLEY} or order_matters(request)
 
-    With the heaviest inside there is only one. With access anywhere, and nothing else that depends on the
-    order, write every count vector in one and the same order of kinds that the rule allows (the widest inside
-    breaks none but the heaviest-inside rule): the plates two such stacks share form a common subsequence, so
-    their distance is the plain difference of the counts, and no two orders can share more than that. Every
-    chain of stacks is therefore matched by the chain of its count vectors at no greater price. For the same
-    reason the difference of counts is a lower bound for every other access and order.
+
+def inside_first(kit: Kit, request: PlanRequest) -> list[int]:
+    """One order of kinds in which every count vector obeys the rule and is most comfortable to thread.
+
+    With the widest inside, the rims step down from the widest to the narrowest, which no order can better;
+    and holes fail to line up only where consecutive diameters are further apart than a finger, where every
+    order fails at least once. So of all orders of the same plates this one has the least rims, the fewest
+    misaligned neighbours and the same thickness: if any order of some plates passes rules about these, one
+    after another, this one does.
     """
-    if request.order is Order.HEAVIEST_INSIDE:
-        return True
-    return request.access is Access.ANYWHERE and not order_matters(request)
-
-
-def inside_first(kit: Kit, order: Order) -> list[int]:
-    """An order of kinds in which every count vector obeys the rule."""
-    if order in {Order.WIDEST_INSIDE, Order.NO_VALLEY}:
+    if by_width(request) and request.order is not Order.HEAVIEST_INSIDE:
         return sorted(range(kit.kinds), key=lambda kind: (-kit.diameter[kind], kind))
     return list(range(kit.kinds))
+
+
+def rules_by_counts(request: PlanRequest) -> tuple[Comfort, ...]:
+    """The comfort rules, from the first, that :func:`inside_first` decides for all orders of some plates."""
+    if request.order is Order.HEAVIEST_INSIDE:
+        return request.comfort
+    by = [rule.by for rule in request.comfort]
+    return request.comfort[: by.index(ComfortBy.BALANCE)] if ComfortBy.BALANCE in by else request.comfort
 
 
 def leading_thickness(request: PlanRequest) -> int:
@@ -73,8 +79,8 @@ def comfortable_vectors(kit: Kit, request: PlanRequest, vectors: Ints) -> Ints:
 
 def family(kit: Kit, request: PlanRequest, alphabet: Alphabet, vectors: Ints) -> Family:
     """The stacks of one weight, given its count vectors after :func:`comfortable_vectors`."""
-    if one_order_is_enough(request):
-        rows = sorted_digits(alphabet, vectors, inside_first(kit, request.order))
+    if request.order is Order.HEAVIEST_INSIDE:
+        rows = sorted_digits(alphabet, vectors, inside_first(kit, request))
         codes = alphabet.write(rows)
     else:
         codes = all_orders(kit, request.order, alphabet, vectors)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from itertools import pairwise
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -16,12 +17,13 @@ from app.planning.arrange import (
     inside_first,
     leading_thickness,
     order_matters,
+    rules_by_counts,
     sorted_digits,
 )
-from app.planning.comfort import misaligned
+from app.planning.comfort import comfort_values, misaligned
 from app.planning.prices import Numbers
 from app.planning.problem import Problem
-from app.planning.request import Access, Order
+from app.planning.request import Access, ComfortBy, Order
 from app.planning.smaller import build_graph
 from app.planning.sweep import Course
 
@@ -34,26 +36,75 @@ def stack_course(problem: Problem) -> Course:
     return _course(problem, request.access, start, families, np.zeros(1, problem.prices.dtype))
 
 
-def count_course(problem: Problem) -> Course:
+def sorted_course(problem: Problem) -> Course:
+    """The course over one stack for each count vector, under the request's own access: some chains only."""
+    alphabet = problem.alphabet
+    whole = count_course(problem, bound=True)
+    families = [(whole.graph.codes[part.ends], whole.graph.length[part.ends]) for part in whole.graph.parts]
+    start = (alphabet.write(start_row(problem)), np.array([len(problem.kit.start)]))
+    seed = np.zeros(1, problem.prices.dtype)
+    return _course(problem, problem.request.access, start, families[1:], seed)
+
+
+def counts_are_enough(problem: Problem) -> bool:
+    """Whether the best chain of count vectors gives the best chain of stacks.
+
+    So it is with access anywhere when only the counts matter: from any stack, keep what the next counts share
+    with it and put the other plates where the rule lets them stand (:mod:`app.planning.inplace`); that
+    handles the plain difference of the counts, and no change can handle less. It is so too when rims or
+    threading count and what is on the bar stands with the widest inside: keep every stack so, which is also
+    the most comfortable order. Balance depends on the order in other ways.
+    """
+    request = problem.request
+    if request.access is not Access.ANYWHERE or request.order is Order.HEAVIEST_INSIDE:
+        return False
+    if any(rule.by is ComfortBy.BALANCE for rule in request.comfort):
+        return False
+    return not order_matters(request) or obeys(problem, problem.kit.start, Order.WIDEST_INSIDE)
+
+
+def count_course(problem: Problem, *, bound: bool = False) -> Course:
     """The course over count vectors, each written as one stack, as if any plate could be moved.
 
-    Exact where :func:`app.planning.arrange.one_order_is_enough` says so, and a lower bound everywhere: where
-    the order matters to comfort or threading, both are left out.
+    Its best chain is a lower bound for every order and access (then, with ``bound``, the start counts as if
+    it obeyed the order), and exact where :func:`counts_are_enough`.
     """
     kit, request, alphabet = problem.kit, problem.request, problem.alphabet
-    inside = inside_first(kit, request.order)
-    # Where the order matters, comfort is left out of what is only a lower bound.
-    rules = [] if order_matters(request) else request.comfort[leading_thickness(request) :]
+    inside = inside_first(kit, request)
+    rules = rules_by_counts(request)[leading_thickness(request) :]
     families = []
     for share in problem.distinct:
         codes = np.sort(alphabet.write(sorted_digits(alphabet, problem.vectors[share], inside)))
         families.append(comfortable_family(kit, alphabet, codes, rules))
-    left, seed = start_left(problem)
+    left, seed = (problem.start, np.zeros(1, problem.prices.dtype)) if bound else start_left(problem)
     codes = alphabet.write(sorted_digits(alphabet, left, inside))
     order = np.argsort(codes)
     start = (codes[order], left.sum(axis=1)[order])
-    threaded = not order_matters(request)
-    return _course(problem, Access.ANYWHERE, start, families, seed[order], threaded=threaded)
+    return _course(problem, Access.ANYWHERE, start, families, seed[order])
+
+
+Bars = list[tuple[ComfortBy, int]]
+
+
+def comfort_bars(problem: Problem, share: int) -> Bars:
+    """What each comfort rule allows at most for a share, without listing an order: the rules one after another
+    on the stacks with the widest inside (see :func:`app.planning.arrange.inside_first`). Not for balance."""
+    kit, alphabet, bars = problem.kit, problem.alphabet, []
+    rows = sorted_digits(alphabet, problem.vectors[share], inside_first(kit, problem.request))
+    for rule in problem.request.comfort[leading_thickness(problem.request) :]:
+        values, unit = comfort_values(kit, rows, rule.by)
+        most = int(values.min()) + int(rule.slack // unit)
+        bars.append((rule.by, most))
+        rows = rows[values <= most]
+    return bars
+
+
+def comfortable(problem: Problem, bars: Bars, rows: NDArray[Any]) -> NDArray[np.bool_]:
+    """Which rows of digits keep to every bar."""
+    good = np.ones(len(rows), np.bool_)
+    for by, most in bars:
+        good &= comfort_values(problem.kit, rows, by)[0] <= most
+    return good
 
 
 def _course(
@@ -62,20 +113,18 @@ def _course(
     start: Family,
     families: Sequence[Family],
     seed: Numbers,
-    *,
-    threaded: bool = True,
 ) -> Course:
     fees: list[Numbers] = [np.zeros(len(seed), problem.prices.dtype)]
     for share, (codes, _) in zip(problem.distinct, families, strict=True):
-        fees.append(fee_of(problem, share, problem.alphabet.read(codes), threaded=threaded))
+        fees.append(fee_of(problem, share, problem.alphabet.read(codes)))
     graph = build_graph(problem.alphabet, access, [start, *families])
     return Course(graph, problem.attempts, tuple(fees), seed)
 
 
-def fee_of(problem: Problem, share: int, rows: NDArray[np.int8], *, threaded: bool = True) -> Numbers:
+def fee_of(problem: Problem, share: int, rows: NDArray[np.int8]) -> Numbers:
     """Threading and distance to the chart of rows of digits that make a share."""
     fee = problem.nearness(share, counts_of(rows, problem.kit.kinds))
-    if problem.prices.thread and threaded:
+    if problem.prices.thread:
         fee = fee + misaligned(problem.kit, rows).astype(fee.dtype) * problem.prices.packed_thread()
     return fee
 
@@ -99,7 +148,7 @@ def start_left(problem: Problem) -> tuple[NDArray[np.int64], Numbers]:
     while waiting:
         smaller = set()
         for stack in waiting:
-            if obeys(problem, stack):
+            if obeys(problem, stack, problem.request.order):
                 gone = sum(problem.prices.off[kind] for kind in problem.kit.start)
                 gone -= sum(problem.prices.off[kind] for kind in stack)
                 found[tuple(np.bincount(stack, minlength=problem.kit.kinds).tolist())] = gone
@@ -110,9 +159,8 @@ def start_left(problem: Problem) -> tuple[NDArray[np.int64], Numbers]:
     return vectors, np.array([int(price) for price in found.values()], problem.prices.dtype)
 
 
-def obeys(problem: Problem, kinds: tuple[int, ...]) -> bool:
-    """Whether a stack of kinds obeys the request's order."""
-    order = problem.request.order
+def obeys(problem: Problem, kinds: tuple[int, ...], order: Order) -> bool:
+    """Whether a stack of kinds obeys an order."""
     if order is Order.ANY:
         return True
     if order is Order.HEAVIEST_INSIDE:

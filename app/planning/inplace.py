@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from itertools import combinations
 
+from app.planning.arrange import order_matters
 from app.planning.course import obeys
 from app.planning.problem import Problem
 from app.planning.request import Order
@@ -17,7 +18,7 @@ def leave_in_place(problem: Problem, chain: list[list[int]]) -> list[tuple[int, 
     an allowed stack is allowed) and put every other plate just outside the outermost plate that is at least
     as wide (as heavy, where any order goes), else innermost; with no valley, the widest of all goes just
     outside the widest there is. The start may break the order; of what it shares with the first counts, the
-    worthiest part that obeys is kept.
+    worthiest part that obeys is kept. Where rims or threading count, every stack has the widest inside.
     """
     stack = _best_of_start(problem, chain[0]) if chain else ()
     stacks = []
@@ -41,7 +42,7 @@ def _keep(stack: tuple[int, ...], counts: list[int]) -> tuple[int, ...]:
 
 
 def _insert(problem: Problem, stack: tuple[int, ...], kind: int) -> tuple[int, ...]:
-    order = problem.request.order
+    order = Order.WIDEST_INSIDE if order_matters(problem.request) else problem.request.order
     size = problem.kit.mass if order is Order.ANY else problem.kit.diameter
     at_least = size[kind]
     if order is Order.NO_VALLEY:
@@ -52,7 +53,7 @@ def _insert(problem: Problem, stack: tuple[int, ...], kind: int) -> tuple[int, .
 
 def _best_of_start(problem: Problem, counts: list[int]) -> tuple[int, ...]:
     start = problem.kit.start
-    if obeys(problem, start):
+    if obeys(problem, start, problem.request.order):
         return start
     worth = problem.prices.off + problem.prices.on
     best: tuple[int, tuple[int, ...]] = (-1, ())
@@ -60,6 +61,6 @@ def _best_of_start(problem: Problem, counts: list[int]) -> tuple[int, ...]:
         for some in combinations(start, size):
             shared = _keep(some, counts)
             value = sum(int(worth[kind]) for kind in shared)
-            if value > best[0] and obeys(problem, shared):
+            if value > best[0] and obeys(problem, shared, problem.request.order):
                 best = (value, shared)
     return best[1]

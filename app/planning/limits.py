@@ -9,6 +9,7 @@ import numpy as np
 
 from app.planning.prices import Numbers, Prices
 from app.planning.sweep import Course, Sweep
+from app.planning.watch import Watch
 
 
 @dataclass(frozen=True)
@@ -26,6 +27,7 @@ class Limits:
     course: Course
     prices: Prices
     never: int
+    watch: Watch
 
     @cached_property
     def _measure(self) -> Sweep:
@@ -61,6 +63,7 @@ class Limits:
         course = self.course
         reached = self._measured(course.seed)
         for attempt in range(1, len(course.attempts)):
+            self.watch.check()
             found = self._measure.carry(reached, course.part(attempt - 1), course.part(attempt))
             kept = found + self.fee(course.attempts[attempt]) <= limit
             if not kept.any():
@@ -96,6 +99,7 @@ class Limits:
         course = self.course
         reached = [course.seed]
         for attempt in range(1, len(course.attempts)):
+            self.watch.check()
             here = course.attempts[attempt]
             found = self._carry(reached[-1], attempt, limit)
             reached.append(np.minimum(found + course.fee[here], self.never))

@@ -59,6 +59,13 @@ class Alphabet:
         outside = codes & ((1 << shift) - 1)
         return inside | (outside << self.bits)
 
+    def with_plate(self, codes: Codes, place: int, digits: Places) -> Codes:
+        """The stacks with one more plate, which then stands at this place."""
+        shift = self.shift(place)
+        inside = (codes >> (shift + self.bits)) << (shift + self.bits)
+        outside = codes & ((1 << (shift + self.bits)) - 1)
+        return inside | (outside >> self.bits) | (digits.astype(self.dtype) << shift)
+
 
 @dataclass(frozen=True, slots=True)
 class Level:

@@ -2,93 +2,100 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from dataclasses import replace
 
-from app.loading.equipment import Stack
-from app.planning.answer import Plan, slowest, summed
-from app.planning.arrange import counts_of, one_order_is_enough
+from app.planning.answer import Bound, Plan, slowest, summed
+from app.planning.arrange import how_many_orders
 from app.planning.budget import Budget
 from app.planning.compose import compose
-from app.planning.course import count_course, stack_course
-from app.planning.distance import Distance
-from app.planning.inplace import leave_in_place
-from app.planning.limits import Limits
+from app.planning.hard import Hunt
 from app.planning.problem import Problem, prepare
-from app.planning.request import Access, Aim, ComfortBy, Order, PlanRequest
-from app.planning.stays import Stays
-from app.planning.sweep import Course, Sweep, least_total, way_back
-from app.planning.unfold import best_by_stays
+from app.planning.refusal import bad_request
+from app.planning.request import Access, ComfortBy, Order, PlanRequest
+from app.planning.solution import Solution, priced
+from app.planning.watch import OutOfTime, Watch
+from app.planning.ways import by_counts, by_stays, by_sweep, counts_are_enough, sorted_only, stays_apply
+
+FEW_STACKS = 3000
+BYTES_A_STACK = 400  # of the plain sweep, smaller stacks included; more with access anywhere
 
 
-def plan(request: PlanRequest, budget: Budget | None = None) -> Plan:  # noqa: ARG001 - watched soon
-    """The plan that asks least of the crew, with its proof. Raises :class:`Refusal` when there is none."""
+def plan(request: PlanRequest, budget: Budget | None = None) -> Plan:
+    """The plan that asks least of the crew, with its proof. Raises :class:`Refusal` when there is none.
+
+    Every stack is summed again, against its weight, the stock, the sleeve and the order, before it is given
+    back. What cannot be proved best within the budget comes with a bound instead.
+    """
+    budget = budget or Budget()
     problem = prepare(request)
-    stacks, kept = _solve(problem)
-    changes = compose(request, stacks)
+    solution = _solve(problem, budget)
+    changes = compose(
+        request, [tuple(problem.kit.plates[kind].face for kind in stack) for stack in solution.stacks]
+    )
     return Plan(
         changes=changes,
         total=summed(changes),
         worst=slowest(changes),
         chart=problem.chart,
-        proof="optimal",
-        limit_kept=kept,
+        proof="optimal" if solution.bound is None else Bound(solution.bound * problem.prices.worth),
+        limit_kept=solution.kept,
     )
 
 
-def _solve(problem: Problem) -> tuple[list[Stack], bool | None]:
-    request = problem.request
-    if one_order_is_enough(request) and request.order is not Order.HEAVIEST_INSIDE:
-        course = count_course(problem)
-        chain, kept = best_chain(problem, course, Access.ANYWHERE)
-        counts = counts_of(problem.alphabet.read(course.graph.codes[chain[1:]]), problem.kit.kinds)
-        kinds = leave_in_place(problem, counts.tolist())
-        return [tuple(problem.kit.plates[kind].face for kind in stack) for stack in kinds], kept
+def _solve(problem: Problem, budget: Budget) -> Solution:
+    """The way that suits the request: all of them exact, each faster than the next where it applies."""
+    watch = Watch(budget)
+    if not problem.request.targets:
+        return priced(problem, [])
+    if counts_are_enough(problem):
+        return by_counts(problem, watch)
     if stays_apply(problem):
-        stays = Stays(problem, count_course(problem))
-        return [
-            tuple(problem.kit.plates[kind].face for kind in stack) for stack in best_by_stays(stays)
-        ], None
-    course = stack_course(problem)
-    chain, kept = best_chain(problem, course, request.access)
-    return problem.stacks(problem.alphabet.read(course.graph.codes[chain[1:]])), kept
+        solution = by_stays(problem, watch)
+        if solution.kept is not False:
+            return solution
+    stacks = how_many_stacks(problem)
+    balanced = any(rule.by is ComfortBy.BALANCE for rule in problem.request.comfort)
+    if stacks <= FEW_STACKS or problem.request.order is Order.HEAVIEST_INSIDE or balanced:
+        return _listed(problem, stacks, budget, watch)
+    return _hunted(problem, stacks, budget, watch)
 
 
-def stays_apply(problem: Problem) -> bool:
-    """Whether nested stays give the exact answer: a sleeve or pin, aim total, an order that leaves kinds
-    free, and no comfort that looks at the order."""
-    request = problem.request
-    return (
-        request.access is Access.OUTER_END
-        and request.order is not Order.HEAVIEST_INSIDE
-        and request.aim is Aim.TOTAL
-        and request.limit is None
-        and not any(rule.by is not ComfortBy.THICKNESS for rule in request.comfort)
-    )
+def how_many_stacks(problem: Problem) -> int:
+    """How many stacks the plain sweep would list, over all different weights."""
+    order = problem.request.order
+    return sum(how_many_orders(problem.kit, order, rows) for rows in problem.vectors.values())
 
 
-def best_chain(problem: Problem, course: Course, access: Access) -> tuple[list[int], bool | None]:
-    """Nodes of the best chain through a course, the start first, and whether the asked limit is kept."""
-    prices, limit, kept = problem.prices, problem.limit(), None
-    limits = Limits(course, prices, prices.never)
-    price = Distance(problem.alphabet, access, prices.off, prices.on)
-    sweep = Sweep(course.graph, prices.off, prices.on, prices.never)
-    chain = way_back(course, least_total(course, sweep), price)
-    if limit is not None or problem.request.aim is Aim.WORST:
-        worst = slowest_measure(course, chain, price, prices.fold)
-        kept = None if limit is None else worst <= limit or limits.can_keep(limit)
-        if limit is None or worst > limit:
-            within = limit if kept and limit is not None else limits.least(worst)
-            chain = way_back(course, limits.least_total(within), price, (within, prices.fold))
-    return [int(course.part(t).ends[place]) for t, place in enumerate(chain)], kept
+def sweep_fits(problem: Problem, stacks: int, budget: Budget) -> bool:
+    """Whether the plain sweep stays within the memory of the budget."""
+    ways = problem.alphabet.longest if problem.request.access is Access.ANYWHERE else 2
+    return stacks * (BYTES_A_STACK + 50 * ways) <= budget.memory_bytes
 
 
-def slowest_measure(course: Course, chain: Sequence[int], price: Distance, fold: int) -> int:
-    """The measure of the slowest change of a chain (places in each attempt's list)."""
-    worst = 0
-    for attempt in range(1, len(chain)):
-        before = course.stacks(attempt - 1)[[chain[attempt - 1]]]
-        after = course.stacks(attempt)[[chain[attempt]]]
-        fee = course.fee[course.attempts[attempt]][chain[attempt]]
-        seed = course.seed[chain[0]] if attempt == 1 else 0
-        worst = max(worst, int((seed + price(before, after)[0]) // fold + fee // fold))
-    return worst
+def _listed(problem: Problem, stacks: int, budget: Budget, watch: Watch) -> Solution:
+    if not sweep_fits(problem, stacks, budget):
+        raise bad_request("comfort", "There are too many orders to balance; allow fewer extra plates.")
+    return by_sweep(problem, watch)
+
+
+def _hunted(problem: Problem, stacks: int, budget: Budget, watch: Watch) -> Solution:
+    """A bound, a chain that attains it; failing that, the plain sweep; failing that, the best chain known."""
+    best = _first_known(problem, watch)
+    try:
+        hunt = Hunt(problem, watch, most_stacks=budget.memory_bytes // 2000)
+        best = hunt.best(best)
+        if best.bound is not None and sweep_fits(problem, stacks, budget):
+            best = by_sweep(problem, watch)
+    except OutOfTime:
+        best = replace(best, bound=best.bound or 0)
+    return best
+
+
+def _first_known(problem: Problem, watch: Watch) -> Solution:
+    """Some chain: stacks in one order only, or what a sleeve would carry, which every access can do too."""
+    known = sorted_only(problem, watch)
+    sleeve = replace(problem, request=replace(problem.request, access=Access.OUTER_END))
+    if stays_apply(sleeve):
+        nested = priced(problem, by_stays(sleeve, watch).stacks)
+        known = min(known, nested, key=lambda solution: solution.total)
+    return known

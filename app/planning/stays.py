@@ -13,6 +13,7 @@ from app.planning.problem import Problem
 from app.planning.request import Order
 from app.planning.smaller import Graph
 from app.planning.sweep import Course
+from app.planning.watch import Watch
 
 Places = NDArray[np.int64]
 
@@ -129,30 +130,32 @@ class Stays:
     programming (Cormen, Leiserson, Rivest, Stein, Introduction to Algorithms, chapter on dynamic programming).
     """
 
-    def __init__(self, problem: Problem, course: Course) -> None:
+    def __init__(self, problem: Problem, course: Course, watch: Watch) -> None:
+        self.watch = watch
         self.problem = problem
         self.insides = make_insides(problem, course.graph)
         runs = [(part, len(list(run))) for part, run in groupby(course.attempts[1:])]
         self.runs = runs
         self.before = np.cumsum([0, *(times for _, times in runs)])
-        self.fees = [self._fees(course, part) * times for part, times in runs]
+        self.fees = [self._fees(course, part, times) for part, times in runs]
         self.table: list[Numbers] = []
 
     def bytes_needed(self) -> int:
         """How much the table takes."""
         return len(self.runs) * (len(self.runs) + 3) // 2 * (len(self.insides) + 1) * 8
 
-    def _fees(self, course: Course, part: int) -> Numbers:
+    def _fees(self, course: Course, part: int, times: int) -> Numbers:
         """The fee of every inside that makes this part's weight, ``never`` for the rest."""
         never = self.problem.prices.never
         fees = np.full(len(course.graph.codes) + 1, never, self.problem.prices.dtype)
         # Threading is paid plate by plate along the way, so only the nearness to the chart is left of the fee.
-        fees[course.graph.parts[part].ends] = course.fee[part] % max(1, self.problem.prices.charts)
+        fees[course.graph.parts[part].ends] = times * (course.fee[part] % self.problem.prices.charts)
         return np.asarray(np.minimum(np.append(fees[self.insides.counts], never), never))
 
     def fill(self) -> None:
         """The table: ``table[n][i, K]`` is F(i, i + n, K)."""
         for length in range(len(self.runs)):
+            self.watch.check()
             starts = len(self.runs) - length
             if length == 0:
                 best = np.stack(self.fees)

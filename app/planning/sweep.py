@@ -9,6 +9,7 @@ import numpy as np
 
 from app.planning.prices import Numbers
 from app.planning.smaller import Codes, Graph, Part, Places
+from app.planning.watch import Watch
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,10 +93,11 @@ class Sweep:
             self.value[level.nodes] = self.never
 
 
-def least_total(course: Course, sweep: Sweep) -> list[Numbers]:
+def least_total(course: Course, sweep: Sweep, watch: Watch) -> list[Numbers]:
     """For every attempt, the least price of reaching each of its stacks from the start (aim total)."""
     reached = [course.seed]
     for attempt in range(1, len(course.attempts)):
+        watch.check()
         here = course.attempts[attempt]
         found = sweep.carry(reached[-1], course.part(attempt - 1), course.part(attempt))
         reached.append(np.minimum(found + course.fee[here], sweep.never))

@@ -75,7 +75,7 @@ def requests(draw, *, full: bool = True, most_targets: int = 4, **overrides) -> 
             "finger_mm": draw(fractions("15", "10")),
         }
     fields |= overrides
-    if full and fields["aim"] is Aim.TOTAL:
+    if full and fields["aim"] is Aim.TOTAL and "limit" not in overrides:
         limits = st.one_of(st.none(), st.just("chart"), fractions("1", "3", "7.5", "25", "60"))
         fields["limit"] = draw(limits)
     return PlanRequest(equipment=equipment, targets=targets, **fields)
