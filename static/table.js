@@ -58,15 +58,32 @@
   });
   document.addEventListener("submit", (event) => {
     const { attempt, version, weight } = event.target.elements;
-    if (!weight || !attempt || !seen.has(attempt.value)) return;
-    version.value = seen.get(attempt.value);
-    seen.delete(attempt.value);
+    if (weight && attempt && seen.has(attempt.value)) version.value = seen.get(attempt.value);
   }, true);
 
-  // Boxes that nobody is typing in show what the server says.
+  // What was typed is let go of only when the server has taken it.
+  document.addEventListener("htmx:after:request", (event) => {
+    const { ctx } = event.detail;
+    const { weight, attempt } = ctx.sourceElement.elements ?? {};
+    if (weight && attempt && ctx.response.status < 400) seen.delete(attempt.value);
+  });
+  document.addEventListener("htmx:error", (event) => {
+    const refused = document.getElementById("refused");
+    if (!(event.target instanceof HTMLFormElement) || !refused) return;
+    const message = document.createElement("div");
+    message.className = "message error";
+    message.setAttribute("role", "alert");
+    message.textContent = "Not entered: the server does not answer. Enter it again when this page is connected.";
+    refused.replaceChildren(message);
+  });
+
   document.addEventListener("htmx:after:swap", () => {
     for (const box of document.querySelectorAll(".weight-box")) {
-      if (!seen.has(box.form.elements.attempt.value) && box.value !== box.defaultValue) box.value = box.defaultValue;
+      const { attempt, version } = box.form.elements;
+      // A refused weight stays in its box; its line says why, so what is there now has been seen.
+      if (box.hasAttribute("aria-invalid")) seen.set(attempt.value, version.value);
+      // Boxes that nobody is typing in show what the server says.
+      else if (!seen.has(attempt.value) && box.value !== box.defaultValue) box.value = box.defaultValue;
     }
   });
 })();

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 
 from app.desk.entry import Desk, Work, platform_entry
@@ -10,7 +10,7 @@ from app.desk.errors import NotAllowedNow, SomebodyWasFirst
 from app.loading.mass import show_mass
 from app.meet.declare import Refused, decide, read_weight, sentence
 from app.meet.model import RESULT_WORDS, Attempt, Lifter, Result, attempt_name
-from app.meet.order import default_weight, turns_of
+from app.meet.order import turns_of
 from app.meet.platform import Condition, lifted, overtaken, up_next
 from app.store.picture import Picture, get, store_bar
 from app.store.tables import AttemptRow
@@ -36,7 +36,7 @@ class Subject:
 
     @property
     def name(self) -> str:
-        """``Mara Lindqvist: Squat, 2nd``."""
+        """``Mara Lindvik: Squat, 2nd``."""
         lift = self.now.programme(self.attempt.lift_id).lift(self.attempt.lift_id)
         return f"{self.lifter.name}: {attempt_name(lift.name, self.attempt.number)}"
 
@@ -52,7 +52,6 @@ def declare(desk: Desk, platform_id: int, seen: Seen, text: str, *, who: str) ->
         weight = _read(subject, text)
         if subject.attempt.weight == weight:
             return f"{subject.name} stays at {show_mass(weight)}."
-        _check_not_loaded(subject)
         was = "" if subject.attempt.weight is None else f" (was {show_mass(subject.attempt.weight)})"
         subject.row.weight = weight
         _stamp(subject.row, work)
@@ -62,40 +61,30 @@ def declare(desk: Desk, platform_id: int, seen: Seen, text: str, *, who: str) ->
 
 def _read(subject: Subject, text: str) -> Fraction:
     step = subject.now.programme(subject.attempt.lift_id).lift(subject.attempt.lift_id).step
-    if not text.strip():
-        return _default(subject, step)
-    read = read_weight(text)
-    if isinstance(read, Refused):
-        raise NotAllowedNow(sentence(read))
+    if text.strip():
+        read = read_weight(text)
+        if isinstance(read, Refused):
+            raise NotAllowedNow(sentence(read))
+        weight = read.weight
+    elif subject.attempt.weight is not None:
+        return subject.attempt.weight
+    else:
+        weight = _default(subject, step)
     equipment = subject.now.equipment(subject.attempt.lift_id)
-    decision = decide(read.weight, subject.attempt, subject.earlier, step, equipment, subject.now.unit)
+    decision = decide(weight, subject.attempt, subject.earlier, step, equipment, subject.now.unit)
     if isinstance(decision, Refused):
         raise NotAllowedNow(sentence(decision))
     return decision.weight
 
 
 def _default(subject: Subject, step: Fraction) -> Fraction:
-    if subject.attempt.weight is not None:
-        return subject.attempt.weight
-    before = subject.earlier[-1] if subject.earlier else None
-    known = {turn.attempt.id: turn.weight for turn in turns_of(subject.lifter, subject.earlier, step)}
-    weight = None if before is None else default_weight(before, before.weight or known.get(before.id), step)
+    """The weight that the order shows for this attempt while nobody has handed one in."""
+    asked = replace(subject.attempt, result=Result.OPEN)
+    turns = turns_of(subject.lifter, (*subject.earlier, asked), step)
+    weight = next((turn.weight for turn in turns if turn.attempt.id == asked.id), None)
     if weight is None:
         raise NotAllowedNow(f"{subject.name}: type a weight. An opener has no default.")
-    equipment = subject.now.equipment(subject.attempt.lift_id)
-    decision = decide(weight, subject.attempt, subject.earlier, step, equipment, subject.now.unit)
-    if isinstance(decision, Refused):
-        raise NotAllowedNow(sentence(decision))
     return weight
-
-
-def _check_not_loaded(subject: Subject) -> None:
-    bar = subject.now.bar
-    if bar.condition is Condition.LIFTING and bar.hand and bar.hand.attempt_id == subject.attempt.id:
-        raise NotAllowedNow(
-            f"The bar is loaded for {subject.lifter.name} at {show_mass(bar.hand.weight)}. "
-            "Nothing may change on it now; take “bar is loaded” back first if it is a mistake."
-        )
 
 
 def judge(desk: Desk, platform_id: int, seen: Seen, result: Result, *, who: str) -> str:
@@ -114,6 +103,8 @@ def judge(desk: Desk, platform_id: int, seen: Seen, result: Result, *, who: str)
             _leave_platform(work, subject, result)
             work.what = f"{subject.name}: {RESULT_WORDS[result]}{_at(subject.attempt)}"
         else:
+            if subject.attempt.weight is None:
+                raise NotAllowedNow(f"{subject.name} was never handed in, so nothing was lifted. Use undo.")
             was = RESULT_WORDS[subject.attempt.result]
             work.what = f"{subject.name} corrected to {RESULT_WORDS[result]} (was {was})"
         subject.row.result = result.value

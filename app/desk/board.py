@@ -8,7 +8,9 @@ from fractions import Fraction
 from typing import Any
 
 from app.desk.entry import Desk
-from app.desk.settle import must_ask, plan_for
+from app.desk.planned import must_ask, plan_for, wish_of
+from app.desk.undo import UNDONE
+from app.desk.wish import Wish
 from app.loading.change import HandList, hand_list
 from app.loading.chart import chart_stack, loadable
 from app.loading.equipment import Access, Equipment, Stack
@@ -17,9 +19,11 @@ from app.meet.horizon import Programme
 from app.meet.model import Flight, Lift, Lifter, Result
 from app.meet.order import Turn, without_opener
 from app.meet.platform import up_next
+from app.planning import Budget
 from app.store.engine import reading
-from app.store.journal import last_undoable
+from app.store.journal import last_redoable, last_undoable
 from app.store.picture import Picture, Tool, key, picture, to_stack
+from app.store.tables import JournalRow
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,18 +33,19 @@ class Step:
     turn: Turn
     before: Stack | None
     stack: Stack | None
+    access: Access
 
     @property
     def hands(self) -> HandList | None:
         """What comes off and what goes on."""
         if self.stack is None:
             return None
-        return hand_list(self.before or (), self.stack, Access.OUTER_END)
+        return hand_list(self.before or (), self.stack, self.access)
 
 
 @dataclass(frozen=True, slots=True)
 class Undoable:
-    """The entry that undo would take back."""
+    """The entry that undo would take back, or redo enter again."""
 
     id: int
     what: str
@@ -69,6 +74,12 @@ class Board:
     ask: bool
     no_opener: tuple[Lifter, ...]
     undo: Undoable | None
+    redo: Undoable | None
+
+    @property
+    def wish(self) -> Wish:
+        """How the stacks of the lift looked at are chosen."""
+        return wish_of(self.now, self.lift.id)
 
     @property
     def tool(self) -> Tool:
@@ -82,8 +93,8 @@ def board(
     """Read a platform, looking at a flight and lift, or at those that are lifting."""
     with reading(desk.engine) as session:
         now = picture(session, platform_id)
-        entry = last_undoable(session, now.meet_id, platform_id)
-        undo = Undoable(key(entry), entry.what) if entry else None
+        undo = _named(last_undoable(session, now.meet_id, platform_id))
+        redo = _named(last_redoable(session, now.meet_id, platform_id))
     looked_at = _looked_at(now, flight_id, lift_id)
     if looked_at is None:
         return Bare(now)
@@ -91,7 +102,11 @@ def board(
     programme, equipment = now.programme(lift.id), now.equipment(lift.id)
     order = programme.order(flight.id, lift.id)
     here = (now.flight_id, now.lift_id) == (flight.id, lift.id)
-    steps = _live_steps(now, order, equipment) if here else _fresh_steps(now, order, equipment, lift)
+    access = wish_of(now, lift.id).access
+    if here:
+        steps = tuple(_live_steps(now, order, equipment, access))
+    else:
+        steps = tuple(_fresh_steps(now, order, lift, access, desk.budget))
     return Board(
         now=now,
         programme=programme,
@@ -100,12 +115,17 @@ def board(
         equipment=equipment,
         here=here,
         order=order,
-        steps=tuple(steps),
+        steps=steps,
         up=up_next(now.bar, order) if here else None,
         ask=here and must_ask(now.bar, order, equipment),
         no_opener=without_opener(programme.of_flight(flight.id), programme.of_lift(lift.id)),
         undo=undo,
+        redo=redo,
     )
+
+
+def _named(entry: JournalRow | None) -> Undoable | None:
+    return None if entry is None else Undoable(key(entry), entry.what.removeprefix(UNDONE))
 
 
 def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tuple[Flight, Lift] | None:
@@ -122,7 +142,7 @@ def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tupl
     return None
 
 
-def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment) -> Iterator[Step]:
+def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment, access: Access) -> Iterator[Step]:
     """The steps of the lift that is on: the change in hand first, then the stored plan, each from the one before."""
     stacks = {step["attempt"]: (parse_mass(step["weight"]), to_stack(step["stack"])) for step in _stored(now)}
     hand = now.bar.hand
@@ -130,7 +150,7 @@ def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment) -> It
     if hand is not None and not must_ask(now.bar, order, equipment):
         turn = up_next(now.bar, order)
         if turn is not None:
-            yield Step(turn, hand.before, hand.stack)
+            yield Step(turn, hand.before, hand.stack, access)
             carries = hand.stack
     for turn in order:
         if (
@@ -142,7 +162,7 @@ def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment) -> It
         weight, stack = stacks.get(turn.attempt.id, (None, None))
         if weight != turn.weight:
             stack = None
-        yield Step(turn, carries, stack)
+        yield Step(turn, carries, stack, access)
         carries = stack if stack is not None else carries
 
 
@@ -150,15 +170,18 @@ def _stored(now: Picture) -> list[dict[str, Any]]:
     return [] if now.plan is None else now.plan["steps"]
 
 
-def _fresh_steps(now: Picture, order: Sequence[Turn], equipment: Equipment, lift: Lift) -> Iterator[Step]:
+def _fresh_steps(
+    now: Picture, order: Sequence[Turn], lift: Lift, access: Access, budget: Budget
+) -> Iterator[Step]:
     """The steps of a flight that is not on yet: planned from an empty bar."""
+    equipment = now.equipment(lift.id)
     turns = [turn for turn in order if loadable(equipment, turn.weight)]
-    made = plan_for(now, equipment, (), turns, lift.id)
+    made = plan_for(now, lift.id, (), turns, budget)
     stacks = {} if made is None else {t.attempt.id: c.stack for t, c in zip(turns, made.changes, strict=True)}
     carries: Stack = ()
     for turn in order:
         stack = stacks.get(turn.attempt.id)
-        yield Step(turn, carries, stack)
+        yield Step(turn, carries, stack, access)
         carries = stack if stack is not None else carries
 
 
@@ -191,7 +214,7 @@ def handled_by_chart(steps: Sequence[Step], equipment: Equipment) -> Handled | N
         stack = chart_stack(equipment, step.turn.weight)
         if stack is None:
             return None
-        by_chart.append(Step(step.turn, carries, stack))
+        by_chart.append(Step(step.turn, carries, stack, Access.OUTER_END))
         carries = stack
     return handled(by_chart)
 

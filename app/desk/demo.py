@@ -12,11 +12,11 @@ from sqlmodel import col, select
 from app.desk.attempts import Seen, declare, judge
 from app.desk.bar import bar_is_loaded, bring_flight, instruction_name
 from app.desk.board import Bare, board
-from app.desk.entry import Desk
+from app.desk.entry import Desk, meet_entry
 from app.desk.roster import import_roster, meet_ids
 from app.desk.setup import add_platform, start_meet
 from app.meet.model import Attempt, Result
-from app.store.engine import reading, writing
+from app.store.engine import reading
 from app.store.picture import Picture, picture
 from app.store.tables import SessionRow
 
@@ -29,10 +29,10 @@ def make_demo(desk: Desk, folder: Path) -> bool:
         if meet_ids(session):
             return False
     plan = tomllib.loads((folder / "meet.toml").read_text(encoding="utf-8"))
-    meet_id = start_meet(desk, plan["name"], plan["unit"])
+    meet_id = start_meet(desk, plan["name"], plan["unit"], who=WHO)
     for day in plan["platforms"]:
         platform_id = add_platform(desk, meet_id, day["name"], day["preset"], who=WHO)
-        _name_session(desk, platform_id, day["session"])
+        _name_session(desk, meet_id, platform_id, day["session"])
     for roster in plan["rosters"]:
         import_roster(desk, meet_id, (folder / roster).read_text(encoding="utf-8"), who=WHO)
     with reading(desk.engine) as session:
@@ -43,11 +43,11 @@ def make_demo(desk: Desk, folder: Path) -> bool:
     return True
 
 
-def _name_session(desk: Desk, platform_id: int, name: str) -> None:
-    with writing(desk.engine) as session:
-        row = session.exec(select(SessionRow).where(SessionRow.platform_id == platform_id)).one()
+def _name_session(desk: Desk, meet_id: int, platform_id: int, name: str) -> None:
+    with meet_entry(desk, meet_id, WHO) as work:
+        row = work.session.exec(select(SessionRow).where(SessionRow.platform_id == platform_id)).one()
         row.name = name
-        session.add(row)
+        work.what = f"session named {name}"
 
 
 def _play(desk: Desk, platform_id: int, day: dict[str, Any], folder: Path) -> None:

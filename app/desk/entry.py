@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import time
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass, field
@@ -10,14 +11,19 @@ from datetime import datetime
 from sqlalchemy import Engine
 from sqlmodel import Session, col, select
 
+from app.desk.hands_off import check_hands_off
 from app.desk.hub import Hub, platform_topic
+from app.desk.improve import Improver
 from app.desk.settle import settle
+from app.planning import Budget
 from app.store.engine import writing
 from app.store.journal import Recorder
 from app.store.picture import Picture, get, key, picture
 from app.store.tables import JournalRow, PlatformRow
 
 Clock = Callable[[], datetime]
+
+PLAN_SECONDS = 0.25  # nobody at the table waits longer for a plan
 
 
 @dataclass(frozen=True, slots=True)
@@ -27,6 +33,17 @@ class Desk:
     engine: Engine
     hub: Hub
     clock: Clock
+    budget: Budget = field(default_factory=lambda: Budget(seconds=PLAN_SECONDS, monotonic=time.monotonic))
+    improver: Improver | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Changed:
+    """A platform's new revision, and whether its plan is proved best."""
+
+    platform_id: int
+    revision: int
+    proved: bool
 
 
 @dataclass(slots=True)
@@ -61,13 +78,16 @@ def platform_entry(desk: Desk, platform_id: int, who: str) -> Iterator[Work]:
         work = Work(session, meet_id, platform_id, desk.clock(), who, touched={platform_id})
         recorder = Recorder(session)
         yield work
-        changed = _close(work, recorder)
+        changed = _close(work, recorder, desk.budget)
     _publish(desk, changed)
 
 
 @contextmanager
 def meet_entry(desk: Desk, meet_id: int, who: str) -> Iterator[Work]:
-    """An entry about the whole meet (its roster, its equipment): every platform of it gets a new revision."""
+    """An entry about the whole meet (its roster, its equipment): every platform of it gets a new revision.
+
+    The entry that starts a meet begins with a number that is none, 0, and gives the work the meet's own.
+    """
     with writing(desk.engine) as session:
         work = Work(session, meet_id, None, desk.clock(), who)
         recorder = Recorder(session)
@@ -75,23 +95,26 @@ def meet_entry(desk: Desk, meet_id: int, who: str) -> Iterator[Work]:
         session.flush()
         rows = session.exec(select(PlatformRow).where(col(PlatformRow.meet_id) == work.meet_id))
         work.touched |= {key(row) for row in rows}
-        changed = _close(work, recorder)
+        changed = _close(work, recorder, desk.budget)
     _publish(desk, changed)
 
 
-def _close(work: Work, recorder: Recorder) -> set[int]:
+def _close(work: Work, recorder: Recorder, budget: Budget) -> list[Changed]:
     """Settle, journal, and count the revision up; does nothing at all when nothing was changed."""
     if not recorder.edits():
-        return set()
+        return []
     for platform_id in sorted(work.touched):
-        settle(work.session, platform_id)
+        settle(work.session, platform_id, budget)
     edits = recorder.edits()
+    check_hands_off(work.session, edits)
     revision = None
+    changed = []
     for platform_id in sorted(work.touched):
         row = get(work.session, PlatformRow, platform_id, "platform")
         row.revision += 1
         row.changed_at = work.now
         revision = row.revision
+        changed.append(Changed(platform_id, row.revision, row.plan is None or row.plan.get("proved", True)))
     work.session.add(
         JournalRow(
             meet_id=work.meet_id,
@@ -104,9 +127,11 @@ def _close(work: Work, recorder: Recorder) -> set[int]:
             undoes=work.undoes,
         )
     )
-    return set(work.touched)
+    return changed
 
 
-def _publish(desk: Desk, changed: set[int]) -> None:
-    for platform_id in sorted(changed):
-        desk.hub.publish(platform_topic(platform_id))
+def _publish(desk: Desk, changed: list[Changed]) -> None:
+    for one in changed:
+        desk.hub.publish(platform_topic(one.platform_id))
+        if desk.improver is not None:
+            desk.improver.newer(one.platform_id, one.revision, proved=one.proved)

@@ -91,8 +91,30 @@ def save_plates(
             plate = have.get(face) or PlateRow(platform_id=platform_id, face=face, count=0)
             _set(plate, values)
             work.session.add(plate)
+        _check_room(work)
         _check_searchable(work)
         work.what = f"{now.platform}: plates changed"
+
+
+def _check_room(work: Work) -> None:
+    """Room that is limited can only be kept to when everything that takes it is measured."""
+    now = work.picture()
+    wrong: list[str] = []
+    for tool in now.tools:
+        if tool.implement.usable_mm is None:
+            continue
+        way_out = f"or leave the room for plates of {tool.name} empty."
+        if tool.collar is not None and tool.collar.width_mm is None:
+            wrong.append(f"{tool.name}: fill in how much room its collar takes, {way_out}")
+        unmeasured = [
+            show_mass(item.plate.face)
+            for item in now.stock
+            if item.plate.thickness_mm is None and item.plate.count >= tool.implement.ends
+        ]
+        if unmeasured:
+            wrong.append(f"Fill in the thickness of the {', '.join(unmeasured)}, {way_out}")
+    if wrong:
+        raise NotAllowedNow(" ".join(wrong))
 
 
 def _check_searchable(work: Work) -> None:
@@ -166,6 +188,7 @@ def save_tools(
                 work.session.add(tool)
         if wrong:
             raise NotAllowedNow(" ".join(wrong))
+        _check_room(work)
         work.what = f"{now.platform}: bars and belts changed"
 
 

@@ -9,23 +9,24 @@ from sqlmodel import select
 from app.desk.entry import Desk, meet_entry
 from app.desk.errors import NotAllowedNow
 from app.meet.presets import PRESETS, Preset, exact, preset
-from app.store.engine import writing
 from app.store.picture import get, key
 from app.store.tables import ImplementRow, LiftRow, MeetRow, PlateRow, PlatformRow, SessionRow
 
 MOST_LETTERS = 80
 
 
-def start_meet(desk: Desk, name: str, unit: str) -> int:
+def start_meet(desk: Desk, name: str, unit: str, *, who: str = "director") -> int:
     """A new meet; its id."""
     name = checked_name(name, "the meet")
     if unit not in ("kg", "lb"):
         raise NotAllowedNow("The unit is kg or lb.")
-    with writing(desk.engine) as session:
-        meet = MeetRow(name=name, unit=unit, created_at=desk.clock())
-        session.add(meet)
-        session.flush()
-        return key(meet)
+    with meet_entry(desk, 0, who) as work:
+        meet = MeetRow(name=name, unit=unit, created_at=work.now)
+        work.session.add(meet)
+        work.session.flush()
+        work.meet_id = key(meet)
+        work.what = f"meet {name} started"
+        return work.meet_id
 
 
 def add_platform(desk: Desk, meet_id: int, name: str, preset_key: str, *, who: str) -> int:
@@ -42,7 +43,7 @@ def add_platform(desk: Desk, meet_id: int, name: str, preset_key: str, *, who: s
         work.session.flush()
         platform_id = key(platform)
         tools = [_tool(platform_id, chosen, place) for place in range(len(chosen.tools))]
-        session_row = SessionRow(platform_id=platform_id, name=chosen.session)
+        session_row = SessionRow(platform_id=platform_id, name=chosen.session, rules={"preset": chosen.rules})
         work.session.add_all([*tools, session_row])
         work.session.add_all(
             PlateRow(

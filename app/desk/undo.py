@@ -1,28 +1,51 @@
-"""Undo: the last entry that stands is taken back, in words, and the undo is an entry itself.
+"""Undo and redo: the last entry that stands is taken back, in words, and taking back is an entry itself.
 
 It changes what was entered. It cannot move plates: the crew's instruction stays, and if the bar wanted next
-is now another one, the crew is asked what is on the bar.
+is now another one, the crew is asked what is on the bar. Any depth: each undo reaches one entry further
+back, each redo one forward again, until something new is entered.
 """
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
+from sqlmodel import Session
+
 from app.desk.entry import Desk, platform_entry
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
-from app.store.journal import CannotUndo, last_undoable, put_back
+from app.store.journal import CannotUndo, last_redoable, last_undoable, put_back
+from app.store.tables import JournalRow
+
+Find = Callable[[Session, int, int | None], JournalRow | None]
 
 
 def undo(desk: Desk, platform_id: int, entry_id: int | None, *, who: str) -> str:
     """Take the platform's last entry back. ``entry_id`` is the one the person saw; another is not undone."""
+    return _reverse(desk, platform_id, entry_id, last_undoable, "undo", who)
+
+
+def redo(desk: Desk, platform_id: int, entry_id: int | None, *, who: str) -> str:
+    """Enter again what the last undo took back, if nothing else has been entered since."""
+    return _reverse(desk, platform_id, entry_id, last_redoable, "redo", who)
+
+
+def _reverse(desk: Desk, platform_id: int, entry_id: int | None, find: Find, word: str, who: str) -> str:
     with platform_entry(desk, platform_id, who) as work:
-        entry = last_undoable(work.session, work.meet_id, platform_id)
+        entry = find(work.session, work.meet_id, platform_id)
         if entry is None:
-            raise NotAllowedNow("There is nothing to undo.")
+            raise NotAllowedNow(f"There is nothing to {word}.")
         if entry_id is not None and entry.id != entry_id:
-            raise SomebodyWasFirst(f"Somebody made another entry since: “{entry.what}”. Undo that one first?")
+            raise SomebodyWasFirst(
+                f"Somebody made another entry since: “{entry.what}”. Look before you {word}."
+            )
         try:
             put_back(work.session, entry.edits, entry.what)
         except CannotUndo as refused:
             raise NotAllowedNow(str(refused)) from refused
         work.undoes = entry.id
-        work.what = f"undone: {entry.what}"
-        return f"Undone: {entry.what}."
+        plain = entry.what.removeprefix(UNDONE)
+        work.what = f"{UNDONE if word == 'undo' else REDONE}{plain}"
+        return f"{work.what[0].upper()}{work.what[1:]}."
+
+
+UNDONE, REDONE = "undone: ", "entered again: "

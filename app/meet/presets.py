@@ -53,6 +53,7 @@ class Preset:
     key: str
     name: str
     unit: str
+    rules: str  # the set of rules to start from
     session: str
     tools: tuple[PresetTool, ...]
     plates: tuple[PresetPlate, ...]
@@ -106,6 +107,7 @@ PRESETS = (
         "bar-kg",
         "Bar lifts, kg steel plates",
         "kg",
+        "rounds-bar",
         "Bar lifts",
         (PresetTool("Power bar", "bar", "20", "415", "2.5", "50"),),
         KG_STEEL,
@@ -115,6 +117,7 @@ PRESETS = (
         "bar-lb",
         "Bar lifts, lb iron plates",
         "lb",
+        "rounds-bar",
         "Bar lifts",
         (PresetTool("Power bar", "bar", "45", "415"),),
         LB_IRON,
@@ -124,6 +127,7 @@ PRESETS = (
         "belt-kg",
         "Belt lifts, kg steel plates",
         "kg",
+        "rounds-belt",
         "Belt lifts",
         (PresetTool("Belt and chain", "belt", "0", "260"),),
         BELT_KG,

@@ -16,6 +16,7 @@ from typing import Any, cast
 from sqlalchemy import Table, event, inspect
 from sqlalchemy.orm import UOWTransaction
 from sqlmodel import Session, col, select
+from sqlmodel.sql.sqltypes import UTCDateTime
 
 from app.loading.mass import parse_mass, show_mass
 from app.store.tables import TABLES, Exact, JournalRow, Row
@@ -120,7 +121,7 @@ def unplain(table: str, column: str, value: Any) -> Any:
         return None
     if isinstance(kind, Exact):
         return parse_mass(value)
-    if kind.python_type is datetime:
+    if isinstance(kind, UTCDateTime):
         return datetime.fromisoformat(value)
     return value
 
@@ -155,18 +156,55 @@ def _still(row: Row, after: Mapping[str, Any], iron: set[str]) -> bool:
 
 def last_undoable(session: Session, meet_id: int, platform_id: int | None) -> JournalRow | None:
     """The newest entry that stands: not an undo itself, not undone, and one that changed more than the iron."""
-    undone = select(JournalRow.undoes).where(
-        col(JournalRow.undoes).is_not(None), JournalRow.meet_id == meet_id
+    standing = _standing(session, meet_id)
+    for entry in _newest_first(session, meet_id, platform_id):
+        if entry.undoes is None and entry.id in standing and _moves_more_than_iron(entry.edits):
+            return entry
+    return None
+
+
+def last_redoable(session: Session, meet_id: int, platform_id: int | None) -> JournalRow | None:
+    """The newest undo that stands, as long as nothing else has been entered since."""
+    standing = _standing(session, meet_id)
+    for entry in _newest_first(session, meet_id, platform_id):
+        if entry.id not in standing or not _moves_more_than_iron(entry.edits):
+            continue
+        if entry.undoes is None:
+            return None
+        undone = session.get(JournalRow, entry.undoes)
+        if undone is not None and undone.undoes is None:
+            return entry
+    return None
+
+
+def _standing(session: Session, meet_id: int) -> set[int]:
+    """The entries that no standing entry has taken back. An undo is newer than what it undoes: newest first."""
+    pairs = session.exec(
+        select(JournalRow.id, JournalRow.undoes)
+        .where(JournalRow.meet_id == meet_id)
+        .order_by(col(JournalRow.id).desc())
     )
+    standing: set[int] = set()
+    taken_back: set[int] = set()
+    for entry_id, undoes in pairs:
+        if entry_id is not None and entry_id not in taken_back:
+            standing.add(entry_id)
+            if undoes is not None:
+                taken_back.add(undoes)
+    return standing
+
+
+def _newest_first(session: Session, meet_id: int, platform_id: int | None) -> Iterable[JournalRow]:
+    """The entries of a platform, or of the whole meet, read as far back as they are asked for."""
     query = (
         select(JournalRow)
-        .where(JournalRow.meet_id == meet_id, col(JournalRow.undoes).is_(None))
-        .where(col(JournalRow.id).not_in(undone))
+        .where(JournalRow.meet_id == meet_id)
         .order_by(col(JournalRow.id).desc())
+        .execution_options(yield_per=20)
     )
     if platform_id is not None:
         query = query.where(JournalRow.platform_id == platform_id)
-    return next((entry for entry in session.exec(query) if _moves_more_than_iron(entry.edits)), None)
+    return session.exec(query)
 
 
 def _moves_more_than_iron(edits: Iterable[Edit]) -> bool:

@@ -15,6 +15,8 @@ from app.loading.mass import parse_mass, show_mass
 from app.meet.horizon import Programme
 from app.meet.model import Attempt, Flight, Lift, Lifter, Result
 from app.meet.platform import Bar, Condition, Hand
+from app.meet.rule_reading import read_rules
+from app.meet.rules import Rules
 from app.store.tables import (
     AttemptRow,
     FlightRow,
@@ -30,14 +32,17 @@ from app.store.tables import (
 )
 
 
-@dataclass(frozen=True, slots=True)
 class NotFound(Exception):
-    """Something asked for by number that is not there."""
+    """Something asked for by number that is not there.
 
-    what: str
+    No frozen dataclass: a context manager that an exception passes through sets its traceback.
+    """
 
-    def __str__(self) -> str:
-        return f"There is no such {self.what} here. It may have been taken away; go back and choose again."
+    def __init__(self, what: str) -> None:
+        super().__init__(
+            f"There is no such {what} here. It may have been taken away; go back and choose again."
+        )
+        self.what = what
 
 
 @dataclass(frozen=True, slots=True)
@@ -79,6 +84,7 @@ class Picture:
     stock: tuple[PlateStock, ...]
     tools: tuple[Tool, ...]
     sessions: tuple[tuple[int, str, Programme], ...]
+    rules: dict[int, Rules]  # by session id
     loading: dict[int, dict[str, Any]]  # by lift id
     racks: dict[tuple[int, int], str]  # by (lifter id, lift id)
 
@@ -144,6 +150,7 @@ def picture(session: Session, platform_id: int) -> Picture:
         sessions=tuple(
             (key(row), row.name, _programme(row, lifts, flights, lifters, attempts)) for row in sessions
         ),
+        rules={key(row): to_rules(row, meet.unit) for row in sessions},
         loading={key(row): row.loading or {} for row in lifts},
         racks={(row.lifter_id, row.lift_id): row.setting for row in racks},
     )
@@ -206,6 +213,16 @@ def to_tool(row: ImplementRow) -> Tool:
         Implement(row.mass, 2 if row.kind == "bar" else 1, row.usable_mm),
         collar,
     )
+
+
+def to_rules(row: SessionRow, unit: str) -> Rules:
+    """The session's rules; those that were never set are the preset's. Stored texts were checked when kept."""
+    rules = read_rules(row.rules or {}, unit)
+    if isinstance(rules, list):
+        raise ValueError(  # noqa: TRY004 - a list of sentences is what the reader returns, not a wrong type
+            f"The stored rules of {row.name} cannot be read: {' '.join(rules)}"
+        )
+    return rules
 
 
 def to_lift(row: LiftRow) -> Lift:

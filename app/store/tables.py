@@ -50,9 +50,15 @@ def _json() -> Any:
     return Field(default=None, sa_column=Column(JSON(none_as_null=True), nullable=True))
 
 
+# A number is never given twice: an undo that brings a row back, and a page that still names one that has gone,
+# must not meet another row under the old number.
+ONCE = {"sqlite_autoincrement": True}
+
+
 class Row(SQLModel):
     """What all tables share: a number of their own."""
 
+    __table_args__: Any = ONCE
     id: int | None = Field(default=None, primary_key=True)
 
 
@@ -100,7 +106,7 @@ class PlateRow(Row, table=True):
     """The plates of one face value that stand at a platform."""
 
     __tablename__ = "plate"
-    __table_args__ = (UniqueConstraint("platform_id", "face"),)
+    __table_args__ = (UniqueConstraint("platform_id", "face"), ONCE)
     platform_id: int = _key("platform")
     face: Fraction = _exact()
     count: int
@@ -116,6 +122,7 @@ class SessionRow(Row, table=True):
     platform_id: int = _key("platform")
     name: str
     position: int = 0
+    rules: dict[str, Any] | None = _json()
 
 
 class LiftRow(Row, table=True):
@@ -134,7 +141,7 @@ class FlightRow(Row, table=True):
     """A flight of a session."""
 
     __tablename__ = "flight"
-    __table_args__ = (UniqueConstraint("session_id", "name"),)
+    __table_args__ = (UniqueConstraint("session_id", "name"), ONCE)
     session_id: int = _key("session")
     name: str
     position: int = 0
@@ -144,7 +151,7 @@ class LifterRow(Row, table=True):
     """A lifter; the lot number is unique in the meet."""
 
     __tablename__ = "lifter"
-    __table_args__ = (UniqueConstraint("meet_id", "lot"),)
+    __table_args__ = (UniqueConstraint("meet_id", "lot"), ONCE)
     meet_id: int = _key("meet")
     flight_id: int = _key("flight")
     name: str
@@ -156,7 +163,7 @@ class RackRow(Row, table=True):
     """What is set for a lifter in one lift: rack height, in or out, chain length, as the card says it."""
 
     __tablename__ = "rack"
-    __table_args__ = (UniqueConstraint("lifter_id", "lift_id"),)
+    __table_args__ = (UniqueConstraint("lifter_id", "lift_id"), ONCE)
     lifter_id: int = _key("lifter")
     lift_id: int = _key("lift")
     setting: str
@@ -166,7 +173,7 @@ class AttemptRow(Row, table=True):
     """One attempt. ``version`` rises with each change: a form that saw an older one is refused."""
 
     __tablename__ = "attempt"
-    __table_args__ = (UniqueConstraint("lifter_id", "lift_id", "number"),)
+    __table_args__ = (UniqueConstraint("lifter_id", "lift_id", "number"), ONCE)
     lifter_id: int = _key("lifter")
     lift_id: int = _key("lift")
     number: int

@@ -6,12 +6,12 @@ from collections.abc import Sequence
 from datetime import datetime
 
 from app.desk.board import Board, Step, handled, handled_by_chart
-from app.loading.equipment import Equipment, Order, Stack
+from app.loading.equipment import Equipment, Stack
 from app.loading.mass import show_mass
 from app.loading.stack import check_stack
 from app.meet.model import RESULT_WORDS, Attempt, Lifter, Result, attempt_name
 from app.web.views import CardRow, CardView
-from app.web.words import side_words, stack_words, tool_words, whole_words
+from app.web.words import side_words, stack_words, sum_words, tool_words, whole_words
 
 
 def card_view(one: Board, round_number: int, *, now: datetime) -> CardView:
@@ -69,7 +69,7 @@ def _row(one: Board, equipment: Equipment, step: Step, place: int) -> CardRow:
     turn, hands = step.turn, step.hands
     stack: Stack = step.stack or ()
     if step.stack is not None:
-        check_stack(equipment, stack, turn.weight, Order.HEAVIEST_INSIDE)
+        check_stack(equipment, stack, turn.weight, one.wish.order)
     return CardRow(
         order=str(place),
         lot=str(turn.lifter.lot),
@@ -80,9 +80,16 @@ def _row(one: Board, equipment: Equipment, step: Step, place: int) -> CardRow:
         off=tuple(show_mass(face) for face in hands.off) if hands else (),
         on=tuple(show_mass(face) for face in hands.on) if hands else (),
         rack=one.now.racks.get((turn.lifter.id, one.lift.id), ""),
-        sum=whole_words(equipment, stack, one.tool) if step.stack is not None else "",
+        sum=_sum(one, step),
         note=_note(step),
     )
+
+
+def _sum(one: Board, step: Step) -> str:
+    """The sum for the referee, beside the stack."""
+    if step.stack is None:
+        return ""
+    return whole_words(one.equipment, step.stack, one.tool) or sum_words(step.stack, one.tool)
 
 
 def _note(step: Step) -> str:

@@ -10,6 +10,7 @@ from starlette.responses import Response
 
 from app.desk.board import Bare, Board, board
 from app.meet.model import ROUNDS
+from app.store.picture import NotFound
 from app.web import htmx
 from app.web.card_view import card_view
 from app.web.house import DeskDep, OfficialDep, frame, page
@@ -58,8 +59,9 @@ def show_card(
 ) -> Response:
     """The swap list of one round, ready for the browser's print."""
     one = board(desk, platform_id, flight_id, lift_id)
-    if isinstance(one, Bare) or round_number not in ROUNDS:
-        return htmx.go_to(request, f"/platforms/{platform_id}/cards")
+    asked = (flight_id, lift_id)
+    if isinstance(one, Bare) or (one.flight.id, one.lift.id) != asked or round_number not in ROUNDS:
+        raise NotFound("card")
     around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Cards")
     view = card_view(one, round_number, now=desk.clock())
     return page("cards/page.html", frame=around, layout=htmx.layout(request), view=view)

@@ -7,7 +7,6 @@ from itertools import islice
 
 from app.desk.bar import instruction_name
 from app.desk.board import Board, Step
-from app.loading.equipment import Order
 from app.loading.mass import show_mass
 from app.loading.stack import WrongLoad
 from app.meet.model import attempt_name
@@ -15,7 +14,7 @@ from app.meet.order import Turn
 from app.meet.platform import Condition
 from app.store.picture import Picture
 from app.web.views import ChangeView, CrewState, CrewView, RackView, ThenView, UpView
-from app.web.words import clock_words, end_view, plate_views, side_words, stack_words
+from app.web.words import clock_words, end_view, plate_views, side_words, stack_words, where_words
 
 THEN = 3
 WANTED_WITHIN = 2
@@ -51,12 +50,14 @@ def crew_view(one: Board) -> CrewView:
         try:
             change = _change_in_hand(one)
         except WrongLoad as wrong:
-            # The promise of the house: rather no load than a wrong one.
-            log.exception("a stack failed its re-sum on platform %s", one.now.platform)
-            state, message = (
-                "hold",
-                f"The load could not be verified: {wrong} Load by the chart and tell the table.",
-            )
+            # The promise of the house: rather no load than a wrong one. (Where the crew is only asked what is
+            # on the bar, nothing is to be loaded: a plate of the old change may well have been taken away.)
+            if state != "changed":
+                log.exception("a stack failed its re-sum on platform %s", one.now.platform)
+                state, message = (
+                    "hold",
+                    f"The load could not be verified: {wrong} Load by the chart and tell the table.",
+                )
     return CrewView(
         platform_id=one.now.platform_id,
         platform=one.now.platform,
@@ -147,7 +148,7 @@ def _change_in_hand(one: Board) -> ChangeView | None:
     hand, turn = one.now.bar.hand, _shown_turn(one)
     if hand is None or turn is None:
         return None
-    return change_view(one, Step(turn, hand.before, hand.stack))
+    return change_view(one, Step(turn, hand.before, hand.stack, one.wish.access))
 
 
 def change_view(one: Board, step: Step) -> ChangeView | None:
@@ -155,16 +156,14 @@ def change_view(one: Board, step: Step) -> ChangeView | None:
     hands = step.hands
     if step.stack is None or hands is None:
         return None
-    kept = len(step.stack) - len(hands.on)
-    end = end_view(
-        one.now, one.tool, one.equipment, step.stack, step.turn.weight, kept, Order.HEAVIEST_INSIDE
-    )
+    end = end_view(one, step.stack, step.turn.weight, hands.on_at)
     return ChangeView(
         off=() if step.before is None else plate_views(hands.off, one.now),
         on=plate_views(hands.on, one.now),
         side=side_words(one.tool),
         from_empty=step.before is None,
         end=end,
+        how=where_words(hands, step.before or (), step.stack, step.access),
     )
 
 

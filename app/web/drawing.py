@@ -9,11 +9,12 @@ of the heights: a number must be readable on a plate seen edge-on.
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
+from app.web.geometry import CAP_EM, FULL_MM, Box, width_em
+from app.web.rows import chip_rim, fit_text, line_up
 from app.web.views import EndView, PlateView
 
-FULL_MM = 450.0  # the largest plate of the rulebooks; larger ones make their own drawing smaller
 HEIGHT_UNITS = 440
 STRETCH = (1.6, 6.0)  # units a mm across: the least that still shows a number, the most that looks right
 ACROSS_UNITS = 760  # what plates and collar share before the scale across has to shrink
@@ -25,45 +26,8 @@ SHOULDER_MM, SHOULDER_HEIGHT, SLEEVE_HEIGHT, SHAFT_HEIGHT = 14.0, 96, 50, 28
 COLLAR_MM, COLLAR_HEIGHT = 34.0, 110
 SLIM = 26  # a plate narrower than this is drawn this wide: a number needs a place to stand
 
-# Atkinson Hyperlegible Next, weight 800, in ems: a tabular figure, a point, a capital, others; cap height.
-DIGIT_EM, POINT_EM, CAPITAL_EM, OTHER_EM, CAP_EM = 0.632, 0.33, 0.74, 0.62, 0.668
 TURN_WHEN = 1.9  # a number is turned on its side only if that makes it so many times larger
 LABEL_MAX = 118
-
-
-def width_em(text: str) -> float:
-    """Width of ``text`` in ems of the heaviest face, tabular figures."""
-    return sum(_advance(character) for character in text)
-
-
-def _advance(character: str) -> float:
-    if character.isdigit():
-        return DIGIT_EM
-    if character in ".,: ":
-        return POINT_EM
-    return CAPITAL_EM if character.isupper() else OTHER_EM
-
-
-@dataclass(frozen=True, slots=True)
-class Box:
-    """A rectangle in whole user units, from its upper left corner."""
-
-    x: int
-    y: int
-    width: int
-    height: int
-
-    @property
-    def middle(self) -> int:
-        return self.x + self.width // 2
-
-    @property
-    def right(self) -> int:
-        return self.x + self.width
-
-    @property
-    def bottom(self) -> int:
-        return self.y + self.height
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,6 +71,7 @@ class Drawing:
     collar_mass: str
     chain: tuple[tuple[int, int], ...]  # corners of the chain's way, empty for a bar
     words: str  # the drawing for those who cannot see it
+    mirrored: bool = False  # the other end of the bar, as seen from the same side
 
 
 def draw(end: EndView) -> Drawing:
@@ -219,112 +184,37 @@ def _words(end: EndView) -> str:
     return f"From inside to outside: {faces}{collar}"
 
 
-# Rows of plates to take off or put on.
+def mirrored(drawing: Drawing) -> Drawing:
+    """The other end of the bar: everything from right to left, the numbers still to be read."""
 
-ROW_LINE, ROW_GAP, TOKEN_GAP = 100, 14, 46  # units: one line, between lines, between two plates
-NUMBER_SIZE = 143  # its figures fill 96 of a line's 100 units
-RIM_STRETCH, RIM_LEAST, RIM_TO_NUMBER = 0.62, 9, 12
+    def turned(box: Box | None) -> Box | None:
+        return None if box is None else _turned(box, drawing.width)
 
-
-@dataclass(frozen=True, slots=True)
-class Token:
-    """One plate in a row: its rim to scale, and its number."""
-
-    text: str
-    rim: Box
-    colour: str
-    x: int
-    baseline: int
-    size: int
-
-
-@dataclass(frozen=True, slots=True)
-class Row:
-    width: int
-    height: int
-    tokens: tuple[Token, ...]
+    return replace(
+        drawing,
+        plates=tuple(_turned_plate(plate, drawing.width) for plate in drawing.plates),
+        shaft=turned(drawing.shaft),
+        shoulder=turned(drawing.shoulder),
+        sleeve=turned(drawing.sleeve),
+        collar=turned(drawing.collar),
+        chain=tuple((drawing.width - x, y) for x, y in drawing.chain),
+        words=f"The other end, alike. {drawing.words}",
+        mirrored=True,
+    )
 
 
-def line_up(plates: Sequence[PlateView], lines: int = 1) -> Row:
-    """Plates in the order of the hands, broken into at most ``lines`` lines as even in length as can be."""
-    groups = _break_evenly([_token_width(plate) for plate in plates], lines)
-    tokens: list[Token] = []
-    widest = 0
-    at = 0
-    for line, count in enumerate(groups):
-        y = line * (ROW_LINE + ROW_GAP)
-        x = 0
-        for plate in plates[at : at + count]:
-            tokens.append(_token(plate, x, y))
-            x += _token_width(plate) + TOKEN_GAP
-        widest = max(widest, x - TOKEN_GAP)
-        at += count
-    height = len(groups) * ROW_LINE + (len(groups) - 1) * ROW_GAP
-    return Row(width=max(widest, 1), height=max(height, ROW_LINE), tokens=tuple(tokens))
+def _turned(box: Box, width: int) -> Box:
+    return replace(box, x=width - box.right)
 
 
-def _rim_width(plate: PlateView) -> int:
-    return max(RIM_LEAST, round(plate.thickness_mm * RIM_STRETCH))
-
-
-def _token_width(plate: PlateView) -> int:
-    return _rim_width(plate) + RIM_TO_NUMBER + round(width_em(plate.face) * NUMBER_SIZE)
-
-
-def _token(plate: PlateView, x: int, y: int) -> Token:
-    width = _rim_width(plate)
-    height = max(14, min(96, round(plate.diameter_mm * 96 / FULL_MM)))
-    rim = Box(x, y + (ROW_LINE - height) // 2, width, height)
-    baseline = y + ROW_LINE // 2 + round(NUMBER_SIZE * CAP_EM / 2)
-    return Token(plate.face, rim, plate.colour, rim.right + RIM_TO_NUMBER, baseline, NUMBER_SIZE)
-
-
-def _break_evenly(widths: Sequence[int], lines: int) -> list[int]:
-    """How many go on each line, so that the widest line is as short as can be (two lines at most)."""
-    if lines <= 1 or len(widths) < 2:
-        return [len(widths)]
-
-    def longer_line(first: int) -> int:
-        return max(_line_width(widths[:first]), _line_width(widths[first:]))
-
-    first = min(range(1, len(widths)), key=longer_line)
-    return [first, len(widths) - first]
-
-
-def _line_width(widths: Sequence[int]) -> int:
-    return sum(widths) + TOKEN_GAP * (len(widths) - 1)
-
-
-@dataclass(frozen=True, slots=True)
-class FitText:
-    """A text whose box is exactly as large as its capitals: SVG scales it to any place."""
-
-    text: str
-    width: int
-    height: int
-    baseline: int
-    size: int
-
-
-def fit_text(text: str) -> FitText:
-    """A number or a few capitals, to be shown as large as their place allows."""
-    return FitText(text, width=max(round(width_em(text) * 100), 1), height=70, baseline=68, size=100)
-
-
-# A plate inside a line of text: its rim in a box of 16 by 46 units.
-
-CHIP_WIDTH, CHIP_HEIGHT = 16, 46
-
-
-def chip_rim(plate: PlateView) -> Box:
-    """The rim of a plate beside its number, height by diameter and width by thickness."""
-    width = max(4, min(CHIP_WIDTH - 2, round(plate.thickness_mm * 0.4)))
-    height = max(8, min(CHIP_HEIGHT - 2, round(plate.diameter_mm * (CHIP_HEIGHT - 2) / FULL_MM)))
-    return Box((CHIP_WIDTH - width) // 2, (CHIP_HEIGHT - height) // 2, width, height)
+def _turned_plate(plate: DrawnPlate, width: int) -> DrawnPlate:
+    label = replace(plate.label, x=width - plate.label.x, patch=_turned(plate.label.patch, width))
+    return replace(plate, box=_turned(plate.box, width), label=label)
 
 
 TEMPLATE_GLOBALS: dict[str, Callable[..., object]] = {
     "draw": draw,
+    "mirrored": mirrored,
     "line_up": line_up,
     "fit_text": fit_text,
     "chip_rim": chip_rim,

@@ -6,6 +6,7 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, fields
 
 from fastapi import APIRouter
+from starlette.concurrency import run_in_threadpool
 from starlette.datastructures import FormData
 from starlette.requests import Request
 from starlette.responses import Response
@@ -91,7 +92,7 @@ def _view(now: Picture, typed: Mapping[str, Rows]) -> EquipmentView:
         seen=stock_seen(now.stock, now.tools),
         plates=typed.get("plates") or [*map(_plate_row, now.stock), *spare_plates],
         tools=typed.get("tools") or [*map(_tool_row, now.tools), *spare_tool],
-        lifts=typed.get("lifts") or _lift_rows(now),
+        lifts=_over(_lift_rows(now), typed.get("lifts", [])),
         choices=CHOICES,
         total=show_mass(total) if total else "0",
         tool_sums=tuple(tool_words(tool, now.unit) for tool in now.tools),
@@ -139,6 +140,12 @@ def _lift_rows(now: Picture) -> Rows:
     ]
 
 
+def _over(rows: Rows, typed: Rows) -> Rows:
+    """The lifts with what was typed for each."""
+    by_lift = {row["lift_id"]: row for row in typed}
+    return [row | by_lift.get(row["lift_id"], {}) for row in rows]
+
+
 def _typed_rows(form: FormData, columns: tuple[str, ...]) -> Rows:
     """Repeated fields back into rows; a missing field is empty, not an error of the reader."""
     values = {name: [str(value) for value in form.getlist(name)] for name in columns}
@@ -158,7 +165,8 @@ async def save_plates(request: Request, platform_id: int, desk: DeskDep, officia
     def save() -> None:
         equipment.save_plates(desk, platform_id, rows, str(form.get("seen", "")), who=who(official, ROLE))
 
-    return _save(request, desk, platform_id, official, save, {"plates": rows}, "The plates are saved.")
+    saved = "The plates are saved."
+    return await _save(request, desk, platform_id, official, save, {"plates": rows}, saved)
 
 
 @router.post("/tools")
@@ -170,7 +178,8 @@ async def save_tools(request: Request, platform_id: int, desk: DeskDep, official
     def save() -> None:
         equipment.save_tools(desk, platform_id, rows, str(form.get("seen", "")), who=who(official, ROLE))
 
-    return _save(request, desk, platform_id, official, save, {"tools": rows}, "The bars and belts are saved.")
+    saved = "The bars and belts are saved."
+    return await _save(request, desk, platform_id, official, save, {"tools": rows}, saved)
 
 
 @router.post("/lifts")
@@ -188,10 +197,11 @@ async def save_lifts(request: Request, platform_id: int, desk: DeskDep, official
         ]
         equipment.save_lifts(desk, platform_id, wishes, who=who(official, ROLE))
 
-    return _save(request, desk, platform_id, official, save, {}, "The settings of the lifts are saved.")
+    saved = "The settings of the lifts are saved."
+    return await _save(request, desk, platform_id, official, save, {"lifts": rows}, saved)
 
 
-def _save(
+async def _save(
     request: Request,
     desk: Desk,
     platform_id: int,
@@ -201,16 +211,14 @@ def _save(
     said: str,
 ) -> Response:
     """Save, or show the page again with everything as it was typed."""
-    try:
-        save()
-    except DeskError as refused:
-        return _render(
-            request,
-            desk,
-            platform_id,
-            official,
-            refused=str(refused),
-            status=refused.status_code,
-            typed=typed,
-        )
-    return _render(request, desk, platform_id, official, said=said)
+
+    def saved_or_refused() -> Response:
+        try:
+            save()
+        except DeskError as refused:
+            sentence, status = str(refused), refused.status_code
+            return _render(request, desk, platform_id, official, refused=sentence, status=status, typed=typed)
+        return _render(request, desk, platform_id, official, said=said)
+
+    # A save plans anew: that must not hold up the streams of the other pages.
+    return await run_in_threadpool(saved_or_refused)

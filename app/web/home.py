@@ -11,6 +11,8 @@ from starlette.requests import Request
 from starlette.responses import Response
 
 from app.desk import setup
+from app.desk.entry import Desk
+from app.desk.errors import DeskError
 from app.desk.roster import pictures
 from app.meet.presets import PRESETS
 from app.store.engine import reading
@@ -25,41 +27,77 @@ router = APIRouter()
 @router.get("/")
 def home(request: Request, desk: DeskDep, official: OfficialDep) -> Response:
     """All meets of this folder, and the form for a new one."""
+    return _render_home(request, desk, official)
+
+
+def _render_home(
+    request: Request, desk: Desk, official: str, *, refused: str = "", typed: str = "", unit: str = "kg"
+) -> Response:
     with reading(desk.engine) as session:
         meets = [
             (key(row), row.name, row.unit) for row in session.exec(select(MeetRow).order_by(col(MeetRow.id)))
         ]
     return page(
-        "home/page.html", frame=frame("Platewright", official), layout=htmx.layout(request), meets=meets
+        "home/page.html",
+        422 if refused else 200,
+        frame=frame("Platewright", official),
+        layout=htmx.layout(request),
+        meets=meets,
+        refused=refused,
+        typed=typed,
+        unit=unit,
     )
 
 
 @router.post("/meets")
 def start_meet(
-    request: Request, desk: DeskDep, name: Annotated[str, Form()] = "", unit: Annotated[str, Form()] = "kg"
+    request: Request,
+    desk: DeskDep,
+    official: OfficialDep,
+    name: Annotated[str, Form()] = "",
+    unit: Annotated[str, Form()] = "kg",
 ) -> Response:
     """A new meet."""
-    return htmx.go_to(request, f"/meets/{setup.start_meet(desk, name, unit)}")
+    try:
+        made = setup.start_meet(desk, name, unit)
+    except DeskError as refused:
+        return _render_home(request, desk, official, refused=str(refused), typed=name, unit=unit)
+    return htmx.go_to(request, f"/meets/{made}")
 
 
 @router.get("/meets/{meet_id}")
 def show_meet(request: Request, meet_id: int, desk: DeskDep, official: OfficialDep) -> Response:
     """The meet: its platforms with their pages, and the form for another platform."""
+    return _render_meet(request, desk, meet_id, official)
+
+
+def _render_meet(
+    request: Request,
+    desk: Desk,
+    meet_id: int,
+    official: str,
+    *,
+    refused: str = "",
+    typed: str = "",
+    preset: str = "",
+) -> Response:
     with reading(desk.engine) as session:
         meet = get(session, MeetRow, meet_id, "meet")
         name, unit = meet.name, meet.unit
         platforms = pictures(session, meet_id)
-    presets = [(one.key, one.name) for one in PRESETS if one.unit == unit]
-    around = frame(name, official, meet_id, here="Meet")
     return page(
         "home/meet.html",
-        frame=around,
+        422 if refused else 200,
+        frame=frame(name, official, meet_id, here="Meet"),
         layout=htmx.layout(request),
         meet_id=meet_id,
         name=name,
         unit=unit,
         platforms=platforms,
-        presets=presets,
+        presets=[(one.key, one.name) for one in PRESETS if one.unit == unit],
+        refused=refused,
+        typed=typed,
+        preset=preset,
     )
 
 
@@ -73,7 +111,10 @@ def add_platform(
     preset: Annotated[str, Form()] = "",
 ) -> Response:
     """Another platform."""
-    setup.add_platform(desk, meet_id, name, preset, who=who(official, "director"))
+    try:
+        setup.add_platform(desk, meet_id, name, preset, who=who(official, "director"))
+    except DeskError as refused:
+        return _render_meet(request, desk, meet_id, official, refused=str(refused), typed=name, preset=preset)
     return htmx.go_to(request, f"/meets/{meet_id}")
 
 

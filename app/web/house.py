@@ -72,8 +72,11 @@ def frame(
     if platform_id is not None:
         pages += [
             ("Equipment", f"/platforms/{platform_id}/equipment"),
+            ("Rules", f"/platforms/{platform_id}/rules"),
             ("Table", f"/platforms/{platform_id}/table"),
             ("Crew", f"/platforms/{platform_id}/crew"),
+            ("Check", f"/platforms/{platform_id}/check"),
+            ("Announcer", f"/platforms/{platform_id}/announcer"),
             ("Cards", f"/platforms/{platform_id}/cards"),
         ]
     return Frame(meet, tuple(Link(text, href, text == here) for text, href in pages), official)

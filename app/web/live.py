@@ -8,7 +8,7 @@ from collections.abc import AsyncIterable, AsyncIterator, Callable
 from contextlib import suppress
 from functools import partial
 
-from fastapi import APIRouter
+from fastapi import APIRouter, Depends
 from fastapi.sse import EventSourceResponse, ServerSentEvent
 from starlette.concurrency import run_in_threadpool
 
@@ -25,7 +25,16 @@ TICK_S = 3  # a page that hears nothing for longer than 5 s says that it is not 
 router = APIRouter()
 
 
-@router.get("/platforms/{platform_id}/events", response_class=EventSourceResponse)
+def known_platform(platform_id: int, desk: DeskDep) -> None:
+    """An unknown platform is an answer of 404, not a stream that breaks off."""
+    current_revision(desk, platform_id)
+
+
+@router.get(
+    "/platforms/{platform_id}/events",
+    response_class=EventSourceResponse,
+    dependencies=[Depends(known_platform)],
+)
 async def platform_events(platform_id: int, desk: DeskDep, hub: HubDep) -> AsyncIterable[ServerSentEvent]:
     """Named messages: ``revision`` (its data the number) at once and at each change, ``tick`` between."""
     read = partial(current_revision, desk, platform_id)

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 import asyncio
 import logging
+import time
 from collections.abc import AsyncIterator, Awaitable, Callable
 from contextlib import asynccontextmanager
 from datetime import UTC, datetime
+from urllib.parse import urlsplit
 
 from fastapi import FastAPI
 from fastapi.exceptions import RequestValidationError
@@ -18,19 +20,40 @@ from starlette.staticfiles import StaticFiles
 from app.desk.entry import Clock, Desk
 from app.desk.errors import DeskError
 from app.desk.hub import MemoryHub
+from app.desk.improve import Improver
+from app.planning import Budget
 from app.store.engine import make_engine
 from app.store.migrate import upgrade
 from app.store.picture import NotFound
-from app.web import cards, crew, equipment, home, htmx, live, plan_api, roster, table
+from app.web import (
+    cards,
+    crew,
+    equipment,
+    home,
+    htmx,
+    lift_page,
+    live,
+    plan_api,
+    roster,
+    rules_page,
+    screens,
+    table,
+)
 from app.web.house import PROJECT, frame, page, the_official
 
 log = logging.getLogger("platewright")
+
+IMPROVE_SECONDS = 15.0  # what a plan may take in the background, when nobody waits for it
 
 SECURITY_HEADERS = {
     "Content-Security-Policy": "default-src 'self'; img-src 'self' data:; frame-ancestors 'none'; form-action 'self'",
     "X-Content-Type-Options": "nosniff",
     "Referrer-Policy": "same-origin",
 }
+
+NO_PAGE = "There is no such page here."
+BACK = "Go back, or begin at the first page."
+AGAIN = "Load the page again and enter it once more."
 
 
 def utc_now() -> datetime:
@@ -45,18 +68,22 @@ def create_app(database_url: str, clock: Clock = utc_now) -> FastAPI:
     async def lifespan(app: FastAPI) -> AsyncIterator[None]:
         upgrade(database_url)
         engine = make_engine(database_url)
-        app.state.hub = MemoryHub(asyncio.get_running_loop())
-        app.state.desk = Desk(engine, app.state.hub, clock)
+        hub = MemoryHub(asyncio.get_running_loop())
+        improver = Improver(engine, hub, Budget(seconds=IMPROVE_SECONDS, monotonic=time.monotonic))
+        app.state.hub = hub
+        app.state.desk = Desk(engine, hub, clock, improver=improver)
         yield
+        improver.close()
         engine.dispose()
 
     app = FastAPI(title="Platewright", lifespan=lifespan, docs_url=None, redoc_url=None)
     app.mount("/static", StaticFiles(directory=PROJECT / "static"), name="static")
-    for router in (home, roster, equipment, table, crew, cards, live, plan_api):
+    for router in (home, roster, equipment, lift_page, rules_page, table, crew, screens, cards, live, plan_api):
         app.include_router(router.router)
     app.middleware("http")(_guard)
     app.add_exception_handler(DeskError, _desk_error)
     app.add_exception_handler(NotFound, _not_found)
+    app.add_exception_handler(OverflowError, _no_such_number)
     app.add_exception_handler(HTTPException, _http_error)
     app.add_exception_handler(RequestValidationError, _bad_form)
     app.add_exception_handler(Exception, _broken)
@@ -65,12 +92,19 @@ def create_app(database_url: str, clock: Clock = utc_now) -> FastAPI:
 
 async def _guard(request: Request, call_next: Callable[[Request], Awaitable[Response]]) -> Response:
     """Headers on every answer; and no post from another site's page."""
-    if (
-        request.method not in ("GET", "HEAD", "OPTIONS")
-        and request.headers.get("Sec-Fetch-Site") == "cross-site"
-    ):
-        return JSONResponse({"detail": "Posted from another site: refused."}, status_code=403)
-    response = await call_next(request)
+    if request.method not in ("GET", "HEAD", "OPTIONS") and _from_another_site(request):
+        return _secured(_answer(request, 403, "Posted from another site's page: refused.", AGAIN))
+    return _secured(await call_next(request))
+
+
+def _from_another_site(request: Request) -> bool:
+    """As the browser itself says. Over plain http on a hall's network it sends Origin, but not Sec-Fetch-Site."""
+    origin = request.headers.get("Origin")
+    elsewhere = origin is not None and urlsplit(origin).netloc != request.headers.get("Host")
+    return elsewhere or request.headers.get("Sec-Fetch-Site") == "cross-site"
+
+
+def _secured(response: Response) -> Response:
     for name, value in SECURITY_HEADERS.items():
         response.headers.setdefault(name, value)
     return response
@@ -96,26 +130,28 @@ async def _not_found(request: Request, error: Exception) -> Response:
     return _answer(request, 404, str(error))
 
 
+async def _no_such_number(request: Request, _error: Exception) -> Response:
+    """A number in the address or the form that is larger than any row's."""
+    return _answer(request, 404, NO_PAGE, BACK)
+
+
 async def _http_error(request: Request, error: Exception) -> Response:
     status = error.status_code if isinstance(error, HTTPException) else 500
-    words = {404: "There is no such page here.", 405: "This address takes another kind of request."}
+    words = {404: NO_PAGE, 405: "This address takes another kind of request."}
     detail = error.detail if isinstance(error, HTTPException) else ""
-    return _answer(request, status, words.get(status, str(detail)), "Go back, or begin at the first page.")
+    return _answer(request, status, words.get(status, str(detail)), BACK)
 
 
 async def _bad_form(request: Request, error: Exception) -> Response:
     wrong = error.errors() if isinstance(error, RequestValidationError) else []
+    if any(one["loc"][0] != "body" for one in wrong):
+        return _answer(request, 404, NO_PAGE, BACK)  # the address itself, or its query, is no number
     names = ", ".join(sorted({str(one["loc"][-1]) for one in wrong}))
-    return _answer(
-        request, 422, f"The form was not complete: {names}.", "Load the page again and enter it once more."
-    )
+    return _answer(request, 422, f"The form was not complete: {names}.", AGAIN)
 
 
 async def _broken(request: Request, error: Exception) -> Response:
+    """Answered outside of :func:`_guard`, so the headers are set here."""
     log.error("%s %s failed", request.method, request.url.path, exc_info=error)
-    return _answer(
-        request,
-        500,
-        "Something went wrong inside Platewright; nothing was entered.",
-        "Go back and try once more.",
-    )
+    sentence = "Something went wrong inside Platewright; nothing was entered."
+    return _secured(_answer(request, 500, sentence, "Go back and try once more."))

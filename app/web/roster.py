@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from codecs import BOM_UTF16_BE, BOM_UTF16_LE
 from typing import Annotated
 
 from fastapi import APIRouter, File, Form, UploadFile
@@ -110,11 +111,15 @@ def _uploaded(file: UploadFile | None) -> str:
         raise NotAllowedNow(
             "The file is larger than 1 MB. A roster is a small text file; is this the right one?"
         )
-    for encoding in ("utf-8-sig", "cp1252"):
+    # Spreadsheets write UTF-8, "Unicode text" in UTF-16, or the old code page.
+    wide = data[:2] in (BOM_UTF16_LE, BOM_UTF16_BE)
+    for encoding in ("utf-16",) if wide else ("utf-8-sig", "cp1252"):
         try:
-            return data.decode(encoding)
+            text = data.decode(encoding)
         except UnicodeDecodeError:
             continue
+        if "\x00" not in text:
+            return text
     raise NotAllowedNow("The file is not text. Save it as CSV (UTF-8) and choose it again.")
 
 

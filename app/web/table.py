@@ -52,11 +52,15 @@ def render(
     if isinstance(one, Bare):
         return page("table/empty.html", status, frame=around, layout=htmx.layout(request), now=one.now)
     swapped = htmx.wants_fragment(request)
+    view = table_view(one, at if refused else 0)
+    if refused and at not in {row.attempt_id for row in (*view.order, *view.no_opener)}:
+        # Its line is not on this page (any more): said at the top, with what would have been lost.
+        at, refused = 0, f"{refused} You had typed “{typed}”."
     return page(
         "table/_now.html" if swapped else "table/page.html",
         status,
         frame=around,
-        view=table_view(one, at if refused else 0),
+        view=view,
         said=said,
         refused=refused,
         at=at,
@@ -134,6 +138,21 @@ def undo_last(
 ) -> Response:
     """Take the last entry back."""
     said = undo.undo(desk, platform_id, entry, who=who(official, ROLE))
+    return _answer(request, desk, platform_id, official, flight, lift, said)
+
+
+@router.post("/redo")
+def redo_last(
+    request: Request,
+    platform_id: int,
+    desk: DeskDep,
+    official: OfficialDep,
+    entry: Annotated[int | None, Form()] = None,
+    flight: Looking = None,
+    lift: Looking = None,
+) -> Response:
+    """Enter again what the last undo took back."""
+    said = undo.redo(desk, platform_id, entry, who=who(official, ROLE))
     return _answer(request, desk, platform_id, official, flight, lift, said)
 
 

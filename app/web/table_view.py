@@ -113,6 +113,8 @@ class TableView:
     no_opener: tuple[OrderRow, ...]
     undo_id: int
     undo: str
+    redo_id: int
+    redo: str
     focus: int  # the attempt whose weight is wanted next
     here_now: str  # what the platform is lifting, for a Table that looks elsewhere
 
@@ -148,7 +150,9 @@ def table_view(one: Board, focus: int = 0) -> TableView:
         no_opener=tuple(_no_opener_row(one, lifter) for lifter in one.no_opener),
         undo_id=one.undo.id if one.undo else 0,
         undo=one.undo.what if one.undo else "",
-        focus=focus or _usual_focus(one, rows),
+        redo_id=one.redo.id if one.redo else 0,
+        redo=one.redo.what if one.redo else "",
+        focus=focus or _usual_focus(one),
         here_now=_here_now(one),
     )
 
@@ -217,22 +221,20 @@ def _who(one: Board, place: int) -> str:
     return f"{turn.lifter.name}, {show_mass(turn.weight)}"
 
 
-def _usual_focus(one: Board, rows: tuple[OrderRow, ...]) -> int:
-    """The next attempt of whoever has just lifted, if its weight is wanted; else the first wanted."""
-    wanted = [
-        row.attempt_id for row in (*rows, *(_no_opener_row(one, x) for x in one.no_opener)) if not row.weight
-    ]
-    last = lifted_last(one)
-    if last is not None:
-        done = next(a for a in one.programme.attempts if a.id == last)
-        after = [
-            a.id
-            for a in one.programme.attempts
-            if (a.lifter_id, a.lift_id, a.number) == (done.lifter_id, done.lift_id, done.number + 1)
-        ]
-        if after and after[0] in wanted:
-            return after[0]
-    return wanted[0] if wanted else 0
+def _usual_focus(one: Board) -> int:
+    """The next attempt of whoever has just lifted, if its weight is wanted; else the first that is owed.
+
+    A lifter who has yet to lift the attempt before owes nothing: a second Enter must not hand it in for them.
+    """
+    mine = {(a.lifter_id, a.number): a for a in one.programme.attempts if a.lift_id == one.lift.id}
+    wanted = [step.turn.attempt for step in one.steps if step.turn.assumed]
+    owed = [a.id for a in wanted if mine[a.lifter_id, a.number - 1].result is not Result.OPEN]
+    owed += [mine[lifter.id, 1].id for lifter in one.no_opener]
+    last = next((a for a in mine.values() if a.id == lifted_last(one)), None)
+    after = mine.get((last.lifter_id, last.number + 1)) if last else None
+    if after is not None and after.id in owed:
+        return after.id
+    return owed[0] if owed else 0
 
 
 def _order_rows(one: Board) -> tuple[OrderRow, ...]:

@@ -62,6 +62,7 @@ class ChangeView:
     side: str  # "a side" for a bar, "the stack" for a belt
     from_empty: bool  # a full build: take everything off first, then this
     end: EndView
+    how: str = ""  # which place in the stack each plate leaves or takes, where it is not simply the outer end
 
 
 @dataclass(frozen=True, slots=True)

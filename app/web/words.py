@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Collection, Iterable, Mapping, Sequence
 from datetime import datetime
 from fractions import Fraction
 
-from app.loading.equipment import Equipment, Order, Stack
+from app.desk.board import Board
+from app.loading.change import HandList
+from app.loading.equipment import Access, Equipment, Stack
 from app.loading.mass import show_mass
 from app.loading.stack import check_stack
 from app.store.picture import Picture, PlateStock, Tool
@@ -36,27 +38,49 @@ def plate_views(faces: Iterable[Fraction], now: Picture) -> tuple[PlateView, ...
     return tuple(plate_view(face, stock) for face in faces)
 
 
-def end_view(
-    now: Picture, tool: Tool, equipment: Equipment, stack: Stack, target: Fraction, kept: int, order: Order
-) -> EndView:
+def end_view(one: Board, stack: Stack, target: Fraction, fresh: Collection[int]) -> EndView:
     """The finished end, after the independent re-sum: raises WrongLoad rather than show a wrong load.
 
-    ``kept`` is how many of the innermost plates were on before.
+    ``fresh`` are the places of the plates that go on in this change.
     """
-    check_stack(equipment, stack, target, order)
-    stock = {item.plate.face: item for item in now.stock}
-    plates = tuple(plate_view(face, stock, fresh=place >= kept) for place, face in enumerate(stack))
-    collar = show_mass(tool.collar.mass) if tool.collar else None
-    usable = tool.implement.usable_mm
+    check_stack(one.equipment, stack, target, one.wish.order)
+    stock = {item.plate.face: item for item in one.now.stock}
+    plates = tuple(plate_view(face, stock, fresh=place in fresh) for place, face in enumerate(stack))
+    collar = show_mass(one.tool.collar.mass) if one.tool.collar else None
+    usable = one.tool.implement.usable_mm
     return EndView(
-        implement="bar" if tool.implement.ends == 2 else "belt",
+        implement="bar" if one.tool.implement.ends == 2 else "belt",
         plates=plates,
         collar=collar,
         usable_mm=float(usable) if usable is not None else None,
         count=count_words(len(plates), collar is not None),
-        sum=sum_words(stack, tool),
-        whole=whole_words(equipment, stack, tool),
+        sum=sum_words(stack, one.tool),
+        whole=whole_words(one.equipment, stack, one.tool),
     )
+
+
+def where_words(hands: HandList, before: Stack, after: Stack, access: Access) -> str:
+    """From where plates come off and whereto they go, when a stack can be opened elsewhere than outside."""
+    if access is Access.OUTER_END:
+        return ""
+    off = [
+        f"{show_mass(face)} ({_place(at, len(before))})"
+        for face, at in zip(hands.off, hands.off_at, strict=True)
+    ]
+    on = [
+        f"{show_mass(face)} ({_place(at, len(after))})"
+        for face, at in zip(hands.on, hands.on_at, strict=True)
+    ]
+    parts = [f"{word} {', '.join(plates)}" for word, plates in (("Off:", off), ("On:", on)) if plates]
+    return ". ".join(parts)
+
+
+def _place(at: int, length: int) -> str:
+    if length == 1:
+        return "alone"
+    if at in (0, length - 1):
+        return "innermost" if at == 0 else "outermost"
+    return f"{at + 1} of {length} from inside"
 
 
 def clock_words(at: datetime) -> str:
@@ -90,7 +114,7 @@ def whole_words(equipment: Equipment, stack: Stack, tool: Tool) -> str:
     side, base = sum(stack, Fraction(0)), equipment.base_mass
     whole = show_mass(base + tool.implement.ends * side)
     if tool.implement.ends == 1:
-        return f"{show_mass(side)} + {show_mass(base)} = {whole}" if base else whole
+        return f"{show_mass(side)} + {show_mass(base)} = {whole}" if base else ""  # the stack's sum is all of it
     return f"2 × {show_mass(side)} + {show_mass(base)} = {whole}"
 
 

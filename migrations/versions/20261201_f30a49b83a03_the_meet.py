@@ -26,6 +26,7 @@ def upgrade() -> None:
         sa.Column("unit", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("created_at", sqlmodel.sql.sqltypes.UTCDateTime(), nullable=False),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_meet")),
+        sqlite_autoincrement=True,
     )
     op.create_table(
         "platform",
@@ -43,6 +44,7 @@ def upgrade() -> None:
         sa.Column("plan", sa.JSON(none_as_null=True), nullable=True),
         sa.ForeignKeyConstraint(["meet_id"], ["meet.id"], name=op.f("fk_platform_meet_id_meet")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_platform")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("platform", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_platform_meet_id"), ["meet_id"], unique=False)
@@ -61,6 +63,7 @@ def upgrade() -> None:
             ["platform_id"], ["platform.id"], name=op.f("fk_implement_platform_id_platform")
         ),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_implement")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("implement", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_implement_platform_id"), ["platform_id"], unique=False)
@@ -81,6 +84,7 @@ def upgrade() -> None:
             ["platform_id"], ["platform.id"], name=op.f("fk_journal_platform_id_platform")
         ),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_journal")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("journal", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_journal_meet_id"), ["meet_id"], unique=False)
@@ -98,6 +102,7 @@ def upgrade() -> None:
         sa.ForeignKeyConstraint(["platform_id"], ["platform.id"], name=op.f("fk_plate_platform_id_platform")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_plate")),
         sa.UniqueConstraint("platform_id", "face", name=op.f("uq_plate_platform_id")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("plate", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_plate_platform_id"), ["platform_id"], unique=False)
@@ -108,10 +113,12 @@ def upgrade() -> None:
         sa.Column("platform_id", sa.Integer(), nullable=False),
         sa.Column("name", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("position", sa.Integer(), nullable=False),
+        sa.Column("rules", sa.JSON(none_as_null=True), nullable=True),
         sa.ForeignKeyConstraint(
             ["platform_id"], ["platform.id"], name=op.f("fk_session_platform_id_platform")
         ),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_session")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("session", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_session_platform_id"), ["platform_id"], unique=False)
@@ -125,6 +132,7 @@ def upgrade() -> None:
         sa.ForeignKeyConstraint(["session_id"], ["session.id"], name=op.f("fk_flight_session_id_session")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_flight")),
         sa.UniqueConstraint("session_id", "name", name=op.f("uq_flight_session_id")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("flight", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_flight_session_id"), ["session_id"], unique=False)
@@ -143,6 +151,7 @@ def upgrade() -> None:
         ),
         sa.ForeignKeyConstraint(["session_id"], ["session.id"], name=op.f("fk_lift_session_id_session")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_lift")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("lift", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_lift_implement_id"), ["implement_id"], unique=False)
@@ -160,6 +169,7 @@ def upgrade() -> None:
         sa.ForeignKeyConstraint(["meet_id"], ["meet.id"], name=op.f("fk_lifter_meet_id_meet")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_lifter")),
         sa.UniqueConstraint("meet_id", "lot", name=op.f("uq_lifter_meet_id")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("lifter", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_lifter_flight_id"), ["flight_id"], unique=False)
@@ -180,6 +190,7 @@ def upgrade() -> None:
         sa.ForeignKeyConstraint(["lifter_id"], ["lifter.id"], name=op.f("fk_attempt_lifter_id_lifter")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_attempt")),
         sa.UniqueConstraint("lifter_id", "lift_id", "number", name=op.f("uq_attempt_lifter_id")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("attempt", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_attempt_lift_id"), ["lift_id"], unique=False)
@@ -195,6 +206,7 @@ def upgrade() -> None:
         sa.ForeignKeyConstraint(["lifter_id"], ["lifter.id"], name=op.f("fk_rack_lifter_id_lifter")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_rack")),
         sa.UniqueConstraint("lifter_id", "lift_id", name=op.f("uq_rack_lifter_id")),
+        sqlite_autoincrement=True,
     )
     with op.batch_alter_table("rack", schema=None) as batch_op:
         batch_op.create_index(batch_op.f("ix_rack_lift_id"), ["lift_id"], unique=False)

@@ -1,0 +1,128 @@
+"""What is to be planned on a platform, from what is on the bar; and the plan, within a budget of time."""
+
+from __future__ import annotations
+
+import logging
+from collections.abc import Sequence
+from dataclasses import dataclass
+from functools import partial
+from typing import Any
+
+from app.desk.wish import Wish, plan_request, read_wish
+from app.loading.chart import loadable
+from app.loading.equipment import Equipment, Order, Stack
+from app.loading.mass import show_mass
+from app.loading.stack import WrongLoad, check_stack
+from app.meet.horizon import Programme, horizon
+from app.meet.order import Turn
+from app.meet.platform import Bar, Hand, overtaken
+from app.planning import Budget, Plan, Refusal, plan
+from app.store.picture import Picture, faces
+
+log = logging.getLogger("platewright.plan")
+
+
+@dataclass(frozen=True, slots=True)
+class Situation:
+    """The flight and lift that are on, its order, and the bar."""
+
+    now: Picture
+    programme: Programme
+    flight_id: int
+    lift_id: int
+    equipment: Equipment
+    bar: Bar
+    order: tuple[Turn, ...]
+
+    @property
+    def ask(self) -> bool:
+        """The instruction that is out no longer serves, so somebody must say what is on the bar."""
+        return must_ask(self.bar, self.order, self.equipment)
+
+    @property
+    def turns(self) -> tuple[Turn, ...]:
+        """What is still to be planned: the attempt in hand is not, its stack is settled."""
+        held = self.bar.hand.attempt_id if self.bar.hand and not self.ask else None
+        turns = horizon(self.programme, self.flight_id, self.lift_id, partial(loadable, self.equipment))
+        return tuple(turn for turn in turns if turn.attempt.id != held)
+
+    @property
+    def start(self) -> Stack | None:
+        """From which stack the plan starts: that of the change in hand, else what is on the bar now."""
+        return self.bar.hand.stack if self.bar.hand and not self.ask else self.bar.carries
+
+
+def situation(now: Picture, bar: Bar) -> Situation | None:
+    """The platform as it is to be planned; None while no flight has been brought to it."""
+    if now.flight_id is None or now.lift_id is None:
+        return None
+    programme = now.programme(now.lift_id)
+    return Situation(
+        now=now,
+        programme=programme,
+        flight_id=now.flight_id,
+        lift_id=now.lift_id,
+        equipment=now.equipment(now.lift_id),
+        bar=bar,
+        order=programme.order(now.flight_id, now.lift_id),
+    )
+
+
+def plan_for(
+    now: Picture, lift_id: int, start: Stack | None, turns: Sequence[Turn], budget: Budget
+) -> Plan | None:
+    """The plan for these turns from this start; None where there is nothing to plan.
+
+    A start that is not in the stock any more (a plate was taken away while it hung there) is planned as if
+    from empty: the stacks are right all the same, and the hand list is made from the bar as it is.
+    """
+    if not turns:
+        return None
+    equipment = now.equipment(lift_id)
+    from_here = start if start is not None and owned(equipment, start) else ()
+    targets = [turn.weight for turn in turns]
+    try:
+        return plan(plan_request(now.unit, equipment, wish_of(now, lift_id), from_here, targets), budget)
+    except Refusal as refused:
+        # An entry must not be lost because its plan cannot be made: the crew is told that the load is missing.
+        log.exception("no plan for %s: %s", now.platform, refused.because)
+        return None
+
+
+def wish_of(now: Picture, lift_id: int) -> Wish:
+    """How this lift's stacks are chosen."""
+    return read_wish(now.loading.get(lift_id, {}))
+
+
+def must_ask(bar: Bar, order: Sequence[Turn], equipment: Equipment) -> bool:
+    """The instruction that is out no longer serves: another bar is wanted, or this one is not made by it any more,
+    because a plate of it has gone or the bar itself was found to weigh something else."""
+    return bar.hand is not None and (overtaken(bar, order) or not _makes_its_weight(bar.hand, equipment))
+
+
+def _makes_its_weight(hand: Hand, equipment: Equipment) -> bool:
+    try:
+        check_stack(equipment, hand.stack, hand.weight, Order.ANY)
+    except WrongLoad:
+        return False
+    return True
+
+
+def owned(equipment: Equipment, stack: Stack) -> bool:
+    """Whether the platform has these plates for one end."""
+    have = {plate.face: equipment.pieces_per_end(plate) for plate in equipment.plates}
+    return all(stack.count(face) <= have.get(face, 0) for face in set(stack))
+
+
+def stored_plan(made: Plan | None, turns: Sequence[Turn], skip: int = 0) -> dict[str, Any] | None:
+    """The plan as the platform's row keeps it; the first ``skip`` steps have become the instruction."""
+    if made is None:
+        return None
+    pairs = list(zip(turns, made.changes, strict=True))[skip:]
+    return {
+        "steps": [
+            {"attempt": turn.attempt.id, "weight": show_mass(turn.weight), "stack": faces(change.stack)}
+            for turn, change in pairs
+        ],
+        "proved": made.proof == "optimal",
+    }

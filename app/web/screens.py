@@ -1,0 +1,11 @@
+"""The pages that are only read or printed, gathered for :mod:`app.web.main`."""
+
+from __future__ import annotations
+
+from fastapi import APIRouter
+
+from app.web import announcer_page, check_page
+
+router = APIRouter()
+for _page in (check_page, announcer_page):
+    router.include_router(_page.router)
