@@ -9,21 +9,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from app.web.drawing import (
-    CAP_EM,
-    COLLAR_MM,
-    FULL_MM,
-    HEIGHT_UNITS,
-    SLIM,
-    TOKEN_GAP,
-    Box,
-    chip_rim,
-    draw,
-    fit_label,
-    fit_text,
-    line_up,
-    width_em,
-)
+from app.web.drawing import COLLAR_MM, HEIGHT_UNITS, SLIM, draw, fit_label
+from app.web.geometry import CAP_EM, FULL_MM, Box, width_em
+from app.web.rows import TOKEN_GAP, chip_rim, fit_text, line_up
 from app.web.views import EndView, PlateView
 
 # A calibrated steel set, from memory (diameter, thickness in mm); only the order of the sizes matters here.
