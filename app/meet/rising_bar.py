@@ -57,7 +57,7 @@ def _calls(waiting: list[_Place], rules: Rules, bar: Fraction, rank: int) -> Ite
         bar = max(bar, called.turn.weight)
         following = _next(called, rules, rank, bar)
         rank += 1
-        waiting = [_lifted_to(place, bar) for place in waiting if place is not called]
+        waiting = [place for place in waiting if place is not called]
         waiting += [following] if following is not None else []
 
 
@@ -144,10 +144,3 @@ def _place(
     if weight is None:
         return None
     return _Place(Turn(attempt, lifter, max(weight, bar), assumed=True), rank, left[1:])
-
-
-def _lifted_to(place: _Place, bar: Fraction) -> _Place:
-    """An assumed weight goes up with the bar."""
-    if not place.turn.assumed or place.turn.weight >= bar:
-        return place
-    return replace(place, turn=replace(place.turn, weight=bar))

@@ -325,7 +325,7 @@ def test_a_rising_bar_does_not_go_down() -> None:
 
 
 WEIGHTS = st.integers(0, 1400).map(lambda quarter: Fraction(quarter, 4))
-RESULTS = st.sampled_from([GOOD, MISSED])
+RESULTS = st.sampled_from([GOOD, MISSED, Result.OPEN])
 
 
 @given(

@@ -50,8 +50,8 @@ def test_a_class_that_is_more_than_a_flight_is_split_by_opener() -> None:
 
 def test_the_limit_belongs_to_the_lighter_class() -> None:
     """A class is up to and including its limit (common practice)."""
-    field = [entrant(1, "100", "59"), entrant(2, "100", "59.1")]
-    assert by_class(field, LIMITS, 1) == ((1,), (2,))
+    field = [entrant(number, "100", body) for number, body in enumerate(("58", "59", "59.1", "60"), 1)]
+    assert by_class(field, LIMITS, 2) == ((1, 2), (3, 4))
 
 
 def test_a_flight_needs_room_for_somebody() -> None:

@@ -150,6 +150,18 @@ def test_what_is_found_before_the_lift_is_put_right_first() -> None:
     )  # fmt: skip
 
 
+def test_a_record_attempt_on_a_heavier_bar_counts_no_less_than_was_called() -> None:
+    """The lift counts (V27), so rounding may not take a record away that was made with more."""
+    assert recorded_weight(BAR, Found(Error.HEAVIER, Fraction("200.5"), Fraction(201))) == Fraction("200.5")
+
+
+def test_without_a_rounding_the_true_mass_is_recorded() -> None:
+    exact = replace(BAR, misload_rounding=Fraction(0))
+    assert recorded_weight(exact, Found(Error.UNEQUAL, Fraction(110), Fraction("108.75"))) == Fraction(
+        "108.75"
+    )
+
+
 FACES = st.lists(
     st.sampled_from([Fraction(f) for f in ("25", "10", "2.5", "1.25", "0.5", "0.25")]), max_size=6
 )

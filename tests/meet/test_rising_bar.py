@@ -78,6 +78,12 @@ def test_a_declared_weight_is_never_altered_by_the_order() -> None:
     assert rising(one, two) == [(1, 2, "85"), (2, 2, "97")]
 
 
+def test_after_a_weight_that_breaks_the_rule_the_default_is_back_at_the_bar() -> None:
+    """The bar does not go down (from memory): 80 after 100 is an error, and nothing builds on it."""
+    one = [attempt(1, 1, 100), attempt(1, 2, 80), attempt(1, 3)]
+    assert rising(one) == [(1, 1, "100"), (1, 2, "80"), (1, 3, "100")]
+
+
 def test_a_lifter_following_himself_has_the_longer_time() -> None:
     """IWF 6.5.9 as reprinted: 60 s, and 120 s when following oneself."""
     assert seconds_to_start(RISING, 2, turn(1, 1, 80)) == 60
@@ -219,3 +225,9 @@ def test_an_opener_and_a_fourth_have_no_default() -> None:
 def test_a_step_after_a_record_lift_comes_back_to_a_multiple() -> None:
     """No rule text: the least multiple of 2.5 that is a whole step more than 200.5."""
     assert ruled_default(ROUNDS, attempt(1, 2, "200.5", GOOD), Fraction("200.5")) == 205
+
+
+def test_a_default_rises_by_no_less_than_the_least_rise() -> None:
+    """Common practice: the default must not break the rule about the rise itself."""
+    rules = replace(ROUNDS, least_rise=Fraction(5))
+    assert ruled_default(rules, attempt(1, 1, 100, GOOD), Fraction(100)) == 105
