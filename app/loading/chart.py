@@ -8,7 +8,7 @@ from math import gcd, lcm
 
 from app.loading.equipment import Equipment, Plate, Stack
 
-MOST_SUMS = 2_000_000
+MOST_SUMS = 300_000
 
 
 class TooManyWeights(ValueError):
@@ -21,62 +21,63 @@ def chart_stack(equipment: Equipment, target: Fraction) -> Stack | None:
     That is the greatest vector of counts in dictionary order among those that make the weight from the
     stock. ``None`` when no stack of the stock makes it, or when this one does not fit the sleeve.
     """
-    counts = _greatest(equipment, _share(equipment, target))
-    if counts is None:
-        return None
-    plates = _heaviest_first(equipment)
-    stack = tuple(plate.face for plate, count in zip(plates, counts, strict=True) for _ in range(count))
-    room = equipment.room_mm
-    if room is not None:
-        thickness = [
-            (plate.thickness_mm or Fraction(0)) * count for plate, count in zip(plates, counts, strict=True)
-        ]
-        if sum(thickness, Fraction(0)) > room:
+    return Chart(equipment).stack(target)
+
+
+class Chart:
+    """The loading chart of some equipment: one for many weights, since what has failed once is remembered."""
+
+    def __init__(self, equipment: Equipment) -> None:
+        self.equipment = equipment
+        self.plates = _heaviest_first(equipment)
+        self.scale, self.faces, self.counts = _whole(equipment)
+        kinds = len(self.faces)
+        self.most, self.step = [0] * (kinds + 1), [0] * (kinds + 1)
+        for kind in reversed(range(kinds)):
+            face, count = self.faces[kind], self.counts[kind]
+            self.most[kind] = self.most[kind + 1] + face * count
+            self.step[kind] = gcd(self.step[kind + 1], face if count else 0)
+        self.failed: set[tuple[int, int]] = set()
+
+    def stack(self, target: Fraction) -> Stack | None:
+        """The chart's stack for a weight; see :func:`chart_stack`."""
+        share = (target - self.equipment.base_mass) / self.equipment.implement.ends * self.scale
+        if share < 0 or share.denominator != 1:
             return None
-    return stack
+        counts = self._fill(0, share.numerator)
+        if counts is None or not self._fits(counts):
+            return None
+        return tuple(
+            plate.face for plate, count in zip(self.plates, counts, strict=True) for _ in range(count)
+        )
+
+    def _fits(self, counts: list[int]) -> bool:
+        room = self.equipment.room_mm
+        taken = [
+            (plate.thickness_mm or Fraction(0)) * n for plate, n in zip(self.plates, counts, strict=True) if n
+        ]
+        return room is None or sum(taken, Fraction(0)) <= room
+
+    def _fill(self, kind: int, rest: int) -> list[int] | None:
+        """Depth first, most plates first."""
+        if rest == 0:
+            return [0] * (len(self.faces) - kind)
+        if rest > self.most[kind] or rest % self.step[kind] or (kind, rest) in self.failed:
+            return None
+        for count in range(min(self.counts[kind], rest // self.faces[kind]), -1, -1):
+            tail = self._fill(kind + 1, rest - count * self.faces[kind])
+            if tail is not None:
+                return [count, *tail]
+        self.failed.add((kind, rest))
+        if len(self.failed) > MOST_SUMS:
+            raise TooManyWeights("These plates make more different weights than can be searched.")
+        return None
 
 
 def _heaviest_first(equipment: Equipment) -> list[Plate]:
     return sorted(equipment.plates, key=lambda plate: -plate.face)
 
 
-def _share(equipment: Equipment, target: Fraction) -> Fraction:
-    return (target - equipment.base_mass) / equipment.implement.ends
-
-
-def _greatest(equipment: Equipment, share: Fraction) -> list[int] | None:
-    """Depth first, most plates first; what has failed once is not tried again."""
-    if share < 0:
-        return None
-    scale, faces, counts = _whole(equipment)
-    left = share * scale
-    if left.denominator != 1:
-        return None
-    failed: set[tuple[int, int]] = set()
-    most = [0] * (len(faces) + 1)
-    step = [0] * (len(faces) + 1)
-    for kind in reversed(range(len(faces))):
-        most[kind] = most[kind + 1] + faces[kind] * counts[kind]
-        step[kind] = gcd(step[kind + 1], faces[kind] if counts[kind] else 0)
-
-    def fill(kind: int, rest: int) -> list[int] | None:
-        if rest == 0:
-            return [0] * (len(faces) - kind)
-        if rest > most[kind] or rest % step[kind] or (kind, rest) in failed:
-            return None
-        for count in range(min(counts[kind], rest // faces[kind]), -1, -1):
-            tail = fill(kind + 1, rest - count * faces[kind])
-            if tail is not None:
-                return [count, *tail]
-        failed.add((kind, rest))
-        if len(failed) > MOST_SUMS:
-            raise TooManyWeights("These plates make more different weights than can be searched.")
-        return None
-
-    return fill(0, left.numerator)
-
-
-@lru_cache(maxsize=64)
 def _whole(equipment: Equipment) -> tuple[int, list[int], list[int]]:
     """Faces as whole numbers of one common step, heaviest first, and the pieces for one end."""
     plates = _heaviest_first(equipment)

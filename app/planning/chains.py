@@ -23,7 +23,7 @@ def best_chain(
     """
     prices, limit, kept = problem.prices, problem.limit(), None
     limits = Limits(course, prices, prices.never, watch)
-    price = Distance(problem.alphabet, access, prices.off, prices.on)
+    price = Distance(access, prices.off, prices.on)
     sweep = Sweep(course.graph, prices.off, prices.on, prices.never)
     chain = way_back(course, least_total(course, sweep, watch), price)
     if limit is not None or problem.request.aim is Aim.WORST:
@@ -39,8 +39,8 @@ def slowest_measure(course: Course, chain: Sequence[int], price: Distance, fold:
     """The measure of the slowest change of a chain (places in each attempt's list)."""
     worst = 0
     for attempt in range(1, len(chain)):
-        before = course.stacks(attempt - 1)[[chain[attempt - 1]]]
-        after = course.stacks(attempt)[[chain[attempt]]]
+        before = course.rows(attempt - 1)[[chain[attempt - 1]]]
+        after = course.rows(attempt)[[chain[attempt]]]
         fee = course.fee[course.attempts[attempt]][chain[attempt]]
         seed = course.seed[chain[0]] if attempt == 1 else 0
         worst = max(worst, int((seed + price(before, after)[0]) // fold + fee // fold))

@@ -7,7 +7,7 @@ from fractions import Fraction
 from itertools import pairwise
 
 from app.loading.change import hand_list
-from app.loading.chart import TooManyWeights, chart_stack
+from app.loading.chart import Chart, TooManyWeights
 from app.loading.equipment import Access, Stack
 from app.loading.stack import check_stack, obeys
 from app.planning.answer import Change, ChartFigures, slowest, summed
@@ -28,10 +28,14 @@ def compose(request: PlanRequest, stacks: Sequence[Stack]) -> tuple[Change, ...]
 def describe(request: PlanRequest, stacks: Sequence[Stack], access: Access) -> tuple[Change, ...]:
     """Hand lists and figures of a chain of stacks."""
     worth = plate_worth(request)
+    off_s = {plate.face: plate.off_s for plate in request.equipment.plates}
+    on_s = {plate.face: plate.on_s for plate in request.equipment.plates}
     changes = []
     for target, (before, after) in zip(request.targets, pairwise((request.start, *stacks)), strict=True):
         hands = hand_list(before, after, access, worth)
-        moved = hands.off + hands.on
+        seconds = [*(off_s[face] for face in hands.off), *(on_s[face] for face in hands.on)]
+        if request.thread_s:
+            seconds.append(request.thread_s * misaligned(request, after))
         changes.append(
             Change(
                 target=target,
@@ -40,9 +44,9 @@ def describe(request: PlanRequest, stacks: Sequence[Stack], access: Access) -> t
                 off_at=hands.off_at,
                 on=hands.on,
                 on_at=hands.on_at,
-                plates=len(moved),
-                mass=sum(moved, Fraction(0)),
-                time_s=_seconds(request, hands.off, hands.on, after),
+                plates=len(hands.off) + len(hands.on),
+                mass=sum(hands.off + hands.on, Fraction(0)),
+                time_s=sum(seconds, Fraction(0)),
             )
         )
     return tuple(changes)
@@ -67,13 +71,6 @@ def plate_worth(request: PlanRequest) -> dict[Fraction, int]:
     }
 
 
-def _seconds(request: PlanRequest, off: Stack, on: Stack, after: Stack) -> Fraction:
-    off_s = {plate.face: plate.off_s for plate in request.equipment.plates}
-    on_s = {plate.face: plate.on_s for plate in request.equipment.plates}
-    seconds = sum((off_s[face] for face in off), Fraction(0)) + sum((on_s[face] for face in on), Fraction(0))
-    return seconds + request.thread_s * misaligned(request, after) if request.thread_s else seconds
-
-
 def misaligned(request: PlanRequest, stack: Stack) -> int:
     """Neighbours whose holes are more than ``finger_mm`` apart when both stand on their rims."""
     wide = {plate.face: plate.diameter_mm or Fraction(0) for plate in request.equipment.plates}
@@ -83,10 +80,11 @@ def misaligned(request: PlanRequest, stack: Stack) -> int:
 def chart_stacks(request: PlanRequest) -> list[Stack | None]:
     """The chart's stack for every target; ``None`` where the stock, the sleeve or the order has none."""
     known: dict[Fraction, Stack | None] = {}
+    chart = Chart(request.equipment)
     try:
         for target in request.targets:
             if target not in known:
-                stack = chart_stack(request.equipment, target)
+                stack = chart.stack(target)
                 keeps = stack is not None and obeys(request.equipment, stack, request.order)
                 known[target] = stack if keeps else None
     except TooManyWeights as wrong:

@@ -10,10 +10,10 @@ from numpy.typing import NDArray
 
 from app.planning.kit import Kit
 from app.planning.refusal import bad_request
+from app.planning.watch import Watch
 
 Ints = NDArray[np.int64]
 MOST_SUMS = 3_000_000
-MOST_ROWS = 20_000_000
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,14 +36,15 @@ def suffix_sums(kit: Kit) -> list[Sums]:
     """``sums[k]``: everything the kinds k, k+1, … make, up to the largest share."""
     zero = np.zeros(1, np.int64)
     sums = [Sums(zero, zero, zero)]
-    largest = max(kit.shares, default=0)
+    largest, listed = max(kit.shares, default=0), 0
     for kind in reversed(range(kit.kinds)):
         after = sums[-1]
         pieces = np.arange(min(kit.stock[kind], largest // kit.mass[kind]) + 1)[:, None]
         mass = (after.mass + pieces * kit.mass[kind]).ravel()
         kept = mass <= largest
         mass = mass[kept]
-        if len(mass) > MOST_SUMS:
+        listed += len(mass)
+        if listed > MOST_SUMS:
             raise bad_request("plates", "These plates make more different weights than can be searched.")
         order = np.argsort(mass, kind="stable")
         mass = mass[order]
@@ -54,7 +55,7 @@ def suffix_sums(kit: Kit) -> list[Sums]:
     return sums[::-1]
 
 
-def count_vectors(kit: Kit, extra_plates: int) -> dict[int, Ints]:
+def count_vectors(kit: Kit, extra_plates: int, watch: Watch) -> dict[int, Ints]:
     """For each share, every count vector within stock, room and ``extra_plates`` over the fewest.
 
     Rows are in dictionary order, most of the heaviest first. A share that nothing makes has no rows.
@@ -62,7 +63,7 @@ def count_vectors(kit: Kit, extra_plates: int) -> dict[int, Ints]:
     All shares are filled at once, one kind after the other, heaviest first; a partial vector is kept only if
     the lighter kinds can still make the rest within the plates (and, apart from that, within the
     millimetres) that are left. Without a limit of room no partial vector dies later, so the work is
-    proportional to what comes out.
+    proportional to what comes out. Raises :class:`app.planning.watch.TooLarge` when that outgrows the budget.
     """
     sums = suffix_sums(kit)
     shares = np.unique(np.array(kit.shares, np.int64))
@@ -73,7 +74,7 @@ def count_vectors(kit: Kit, extra_plates: int) -> dict[int, Ints]:
     found = {int(share): np.zeros((0, kit.kinds), np.int64) for share in shares}
     while len(open_shares):
         # The fewest plates may be too thick for the sleeve: then one more is allowed, and one more again.
-        which, rows = _fill(kit, sums, open_shares, allowed + extra_plates)
+        which, rows = _fill(kit, sums, open_shares, allowed + extra_plates, watch)
         again = []
         for index, share in enumerate(open_shares):
             vectors = rows[np.searchsorted(which, index) : np.searchsorted(which, index + 1)]
@@ -87,7 +88,7 @@ def count_vectors(kit: Kit, extra_plates: int) -> dict[int, Ints]:
     return found
 
 
-def _fill(kit: Kit, sums: list[Sums], shares: Ints, most: Ints) -> tuple[Ints, Ints]:
+def _fill(kit: Kit, sums: list[Sums], shares: Ints, most: Ints, watch: Watch) -> tuple[Ints, Ints]:
     """Count vectors of at most ``most`` plates for every share, as (index of the share, rows)."""
     which = np.arange(len(shares))
     rest, left = shares.copy(), most.copy()
@@ -106,8 +107,8 @@ def _fill(kit: Kit, sums: list[Sums], shares: Ints, most: Ints) -> tuple[Ints, I
             if len(kept):
                 parts.append((kept, np.full(len(kept), pieces), new_rest[kept]))
         kept, pieces_put, rest = (np.concatenate(column) for column in zip(*parts, strict=True))
-        if len(kept) * kit.kinds > MOST_ROWS * 4:
-            raise bad_request("extra_plates", "There are too many ways to make these weights; allow fewer.")
+        watch.check()
+        watch.room(len(kept) * kit.kinds * 32)
         # Keep the rows of one share together, most of the heaviest first.
         order = np.lexsort((-pieces_put, kept))
         kept, pieces_put, rest = kept[order], pieces_put[order], rest[order]
@@ -117,3 +118,22 @@ def _fill(kit: Kit, sums: list[Sums], shares: Ints, most: Ints) -> tuple[Ints, I
         wide = wide[kept] + pieces_put * kit.thickness[kind]
     rows = np.stack(columns, axis=1) if columns else np.zeros((len(shares), 0), np.int64)
     return which, rows
+
+
+def one_vector(kit: Kit) -> dict[int, Ints]:
+    """A single count vector of the fewest plates for every share, heaviest first; not minding the room."""
+    sums, found = suffix_sums(kit), {}
+    for share in set(kit.shares):
+        rest, vector = share, []
+        for kind in range(kit.kinds):
+            here, after = sums[kind], sums[kind + 1]
+            left = int(here.fewest[here.find(np.array([rest]))[1]][0])
+            for pieces in range(min(kit.stock[kind], rest // kit.mass[kind]), -1, -1):
+                made, place = after.find(np.array([rest - pieces * kit.mass[kind]]))
+                if made[0] and int(after.fewest[place[0]]) + pieces == left:
+                    vector.append(pieces)
+                    rest -= pieces * kit.mass[kind]
+                    break
+        known = rest == 0 and len(vector) == kit.kinds
+        found[share] = np.array([vector] if known else [], np.int64).reshape(-1, kit.kinds)
+    return found

@@ -26,24 +26,25 @@ from app.planning.problem import Problem
 from app.planning.request import Access, ComfortBy, Order
 from app.planning.smaller import build_graph
 from app.planning.sweep import Course
+from app.planning.watch import Watch
 
 
-def stack_course(problem: Problem) -> Course:
+def stack_course(problem: Problem, watch: Watch) -> Course:
     """The course over every allowed stack of every weight."""
     kit, request, alphabet = problem.kit, problem.request, problem.alphabet
     families = [family(kit, request, alphabet, problem.vectors[share]) for share in problem.distinct]
     start = (alphabet.write(start_row(problem)), np.array([len(kit.start)]))
-    return _course(problem, request.access, start, families, np.zeros(1, problem.prices.dtype))
+    return _course(problem, request.access, start, families, np.zeros(1, problem.prices.dtype), watch)
 
 
-def sorted_course(problem: Problem) -> Course:
+def sorted_course(problem: Problem, watch: Watch) -> Course:
     """The course over one stack for each count vector, under the request's own access: some chains only."""
     alphabet = problem.alphabet
-    whole = count_course(problem, bound=True)
+    whole = count_course(problem, watch, bound=True)
     families = [(whole.graph.codes[part.ends], whole.graph.length[part.ends]) for part in whole.graph.parts]
     start = (alphabet.write(start_row(problem)), np.array([len(problem.kit.start)]))
     seed = np.zeros(1, problem.prices.dtype)
-    return _course(problem, problem.request.access, start, families[1:], seed)
+    return _course(problem, problem.request.access, start, families[1:], seed, watch)
 
 
 def counts_are_enough(problem: Problem) -> bool:
@@ -63,7 +64,7 @@ def counts_are_enough(problem: Problem) -> bool:
     return not order_matters(request) or obeys(problem, problem.kit.start, Order.WIDEST_INSIDE)
 
 
-def count_course(problem: Problem, *, bound: bool = False) -> Course:
+def count_course(problem: Problem, watch: Watch, *, bound: bool = False) -> Course:
     """The course over count vectors, each written as one stack, as if any plate could be moved.
 
     Its best chain is a lower bound for every order and access (then, with ``bound``, the start counts as if
@@ -80,7 +81,7 @@ def count_course(problem: Problem, *, bound: bool = False) -> Course:
     codes = alphabet.write(sorted_digits(alphabet, left, inside))
     order = np.argsort(codes)
     start = (codes[order], left.sum(axis=1)[order])
-    return _course(problem, Access.ANYWHERE, start, families, seed[order])
+    return _course(problem, Access.ANYWHERE, start, families, seed[order], watch)
 
 
 Bars = list[tuple[ComfortBy, int]]
@@ -113,15 +114,16 @@ def _course(
     start: Family,
     families: Sequence[Family],
     seed: Numbers,
+    watch: Watch,
 ) -> Course:
     fees: list[Numbers] = [np.zeros(len(seed), problem.prices.dtype)]
     for share, (codes, _) in zip(problem.distinct, families, strict=True):
         fees.append(fee_of(problem, share, problem.alphabet.read(codes)))
-    graph = build_graph(problem.alphabet, access, [start, *families])
+    graph = build_graph(problem.alphabet, access, [start, *families], watch)
     return Course(graph, problem.attempts, tuple(fees), seed)
 
 
-def fee_of(problem: Problem, share: int, rows: NDArray[np.int8]) -> Numbers:
+def fee_of(problem: Problem, share: int, rows: NDArray[Any]) -> Numbers:
     """Threading and distance to the chart of rows of digits that make a share."""
     fee = problem.nearness(share, counts_of(rows, problem.kit.kinds))
     if problem.prices.thread:

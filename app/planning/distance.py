@@ -9,7 +9,8 @@ from numpy.typing import NDArray
 
 from app.loading.equipment import Access
 from app.planning.prices import Numbers
-from app.planning.smaller import Alphabet, Codes
+
+Rows = NDArray[Any]
 
 
 class Distance:
@@ -17,54 +18,49 @@ class Distance:
 
     off(a) + on(b) − the greatest worth (off + on) of an untouched part: the common inside (outer end), the
     worthiest common run (both ends) or the worthiest common subsequence (anywhere; Wagner and Fischer 1974).
-    Time: the product of the two lengths, vectorised over the many.
+    Time: the product of the two lengths, vectorised over the many. Stacks are rows of digits (kind + 1,
+    innermost first, padded with 0).
     """
 
-    def __init__(self, alphabet: Alphabet, access: Access, off: Numbers, on: Numbers) -> None:
+    def __init__(self, access: Access, off: Numbers, on: Numbers) -> None:
         zero = np.zeros(1, off.dtype)
-        self.alphabet = alphabet
         self.access = access
         self.off = np.concatenate([zero, off])
         self.on = np.concatenate([zero, on])
+        self.worth = self.off + self.on
 
-    def __call__(self, many: Codes, one: Codes) -> Numbers:
-        """Prices from the stacks ``many`` to the stack ``one`` (an array of one code)."""
-        rows = self.alphabet.read(many).astype(np.int64)
-        target = self.alphabet.read(one)[0].astype(np.int64)
-        target = target[target > 0]
-        gross = self.off[rows].sum(axis=1) + self.on[target].sum()
-        stay = {
-            Access.OUTER_END: self._inside,
-            Access.BOTH_ENDS: self._run,
-            Access.ANYWHERE: self._subsequence,
-        }[self.access]
-        return np.asarray(gross - stay(rows, target))
+    def __call__(self, many: Rows, one: Rows) -> Numbers:
+        """Prices from each row of ``many`` to the one row of ``one``, or row by row to as many."""
+        gross = self.off[many].sum(axis=1) + self.on[one].sum(axis=1)
+        if self.access is Access.OUTER_END:
+            return np.asarray(gross - self._inside(many, one))
+        stay = self._run if self.access is Access.BOTH_ENDS else self._subsequence
+        return np.asarray(gross - stay(many, one))
 
-    def _worth(self, kind: Any) -> Any:
-        return self.off[kind] + self.on[kind]
+    def _inside(self, many: Rows, one: Rows) -> Numbers:
+        same = np.logical_and.accumulate(many == one, axis=1)
+        return np.asarray((same * self.worth[many]).sum(axis=1))
 
-    def _inside(self, rows: NDArray[Any], target: NDArray[Any]) -> Numbers:
-        width = min(rows.shape[1], len(target))
-        same = np.logical_and.accumulate(rows[:, :width] == target[:width], axis=1)
-        return np.asarray((same * self._worth(target[:width])).sum(axis=1))
-
-    def _run(self, rows: NDArray[Any], target: NDArray[Any]) -> Numbers:
-        best = np.zeros(len(rows), self.off.dtype)
-        for slide in range(1 - len(target), rows.shape[1]):
-            run = np.zeros(len(rows), self.off.dtype)
-            for place in range(max(0, slide), min(rows.shape[1], slide + len(target))):
-                kind = target[place - slide]
-                run = (run + self._worth(kind)) * (rows[:, place] == kind)
+    def _run(self, many: Rows, one: Rows) -> Numbers:
+        width = many.shape[1]
+        best = np.zeros(len(many), self.off.dtype)
+        for slide in range(1 - width, width):
+            run = np.zeros(len(many), self.off.dtype)
+            for place in range(max(0, slide), min(width, slide + width)):
+                kind = many[:, place]
+                run = (run + self.worth[kind]) * (kind == one[:, place - slide])
                 best = np.maximum(best, run)
         return best
 
-    def _subsequence(self, rows: NDArray[Any], target: NDArray[Any]) -> Numbers:
-        best = [np.zeros(len(rows), self.off.dtype) for _ in range(len(target) + 1)]
-        for place in range(rows.shape[1]):
-            diagonal = best[0]
-            for index, kind in enumerate(target):
+    def _subsequence(self, many: Rows, one: Rows) -> Numbers:
+        width = many.shape[1]
+        best = [np.zeros(len(many), self.off.dtype) for _ in range(width + 1)]
+        for place in range(width):
+            diagonal, kind = best[0], many[:, place]
+            worth = self.worth[kind]
+            for index in range(width):
                 above = best[index + 1]
-                kept = diagonal + self._worth(kind) * (rows[:, place] == kind)
+                kept = diagonal + worth * (kind == one[:, index])
                 best[index + 1] = np.maximum(np.maximum(above, best[index]), kept)
                 diagonal = above
         return best[-1]

@@ -33,7 +33,7 @@ class Hunt:
 
     def __post_init__(self) -> None:
         self.over = 0
-        self.course = count_course(self.problem, bound=True)
+        self.course = count_course(self.problem, self.watch, bound=True)
         self.to_go = make_to_go(self.course, self.problem.prices)
         self.limits = Limits(self.course, self.problem.prices, self.problem.prices.never, self.watch)
 
@@ -53,6 +53,12 @@ class Hunt:
             return replace(free, bound=self._steps(self.to_go.least), kept=False)
         slower = known if known.worst > limit else free
         return replace(self._least_worst(slower, limit + 1), kept=False)
+
+    def floor(self) -> int:
+        """What no plan's aimed figure is below, in steps of the measure, known before any search."""
+        if self.problem.request.aim is Aim.WORST:
+            return self.limits.step_bound()
+        return self._steps(self.to_go.least)
 
     def _steps(self, packed: int) -> int:
         """A packed price in whole steps of the measure."""
@@ -116,15 +122,17 @@ class Hunt:
         """The stacks behind the cheapest end. A narrowed sweep may have priced a change too high; the real
         price is used, so the chain is at least as good as was found."""
         problem, prices = self.problem, self.problem.prices
-        price = Distance(problem.alphabet, problem.request.access, prices.off, prices.on)
-        codes = [reached[-1].codes[[int(np.argmin(reached[-1].price))]]] if len(reached) > 1 else []
+        price = Distance(problem.request.access, prices.off, prices.on)
+        read = problem.alphabet.read
+        rows = [read(reached[-1].codes[[int(np.argmin(reached[-1].price))]])]
         for attempt in range(len(reached) - 1, 1, -1):
             before = reached[attempt - 1]
-            change = price(before.codes, codes[-1])
+            choices = read(before.codes)
+            change = price(choices, rows[-1])
             total = before.price + change
             if limit is not None:
                 share = problem.kit.shares[attempt - 1]
-                fee = int(fee_of(problem, share, problem.alphabet.read(codes[-1]))[0]) // prices.fold
+                fee = int(fee_of(problem, share, rows[-1])[0]) // prices.fold
                 total = np.where(change // prices.fold + fee <= limit, total, prices.never)
-            codes.append(before.codes[[int(np.argmin(total))]])
-        return kinds(problem.alphabet.read(np.concatenate(codes[::-1])))
+            rows.append(choices[[int(np.argmin(total))]])
+        return kinds(np.concatenate(rows[::-1]))

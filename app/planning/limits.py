@@ -74,7 +74,7 @@ class Limits:
     def least(self, most: int) -> int:
         """The least limit that a chain can keep, when ``most`` is one that can be kept. Bisection: whoever
         keeps to a limit keeps to every greater one."""
-        low, high = self._step_bound(), most
+        low, high = self.step_bound(), most
         while low < high:
             middle = (low + high) // 2
             if self.can_keep(middle):
@@ -83,7 +83,7 @@ class Limits:
                 low = middle + 1
         return low
 
-    def _step_bound(self) -> int:
+    def step_bound(self) -> int:
         """No chain has a slowest change below the easiest change of its hardest step."""
         bound = 0
         for attempt in range(1, len(self.course.attempts)):

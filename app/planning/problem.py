@@ -15,18 +15,21 @@ from app.planning.answer import ChartFigures
 from app.planning.arrange import comfortable_vectors
 from app.planning.checking import check_request
 from app.planning.compose import chart_figures, chart_stacks
-from app.planning.counts import Ints, count_vectors
+from app.planning.counts import Ints, count_vectors, one_vector
 from app.planning.kit import Kit, make_kit
 from app.planning.prices import Numbers, Prices, make_prices
+from app.planning.refusal import bad_request
 from app.planning.request import Measure, PlanRequest
 from app.planning.smaller import Alphabet
+from app.planning.watch import TooLarge, Watch
 from app.planning.weights import refuse_weight, shares
 
 
 @dataclass(frozen=True)
 class Problem:
     """A request in whole numbers. ``vectors[share]`` are the allowed count vectors; ``chart_counts[share]``
-    the chart's, where it has a stack; ``start`` is one row of counts."""
+    the chart's, where it has a stack; ``start`` is one row of counts. ``whole`` is false when there were too
+    many count vectors to list all: then any plan is allowed, but none is proved best."""
 
     request: PlanRequest
     kit: Kit
@@ -37,6 +40,7 @@ class Problem:
     start: Ints
     prices: Prices
     alphabet: Alphabet
+    whole: bool
 
     @property
     def distinct(self) -> list[int]:
@@ -59,6 +63,14 @@ class Problem:
             return np.zeros(len(counts), self.prices.dtype)
         return np.asarray(np.abs(counts - chart).sum(axis=1).astype(self.prices.dtype))
 
+    def least_change(self, before: int, after: int) -> int:
+        """What any change between two shares costs at least, in steps of the measure."""
+        if self.request.measure is Measure.PLATES:
+            return int(before != after)
+        if self.request.measure is Measure.MASS:
+            return int(abs(after - before) * self.kit.step // self.prices.worth)
+        return 0
+
     def limit(self) -> int | None:
         """The asked limit in whole steps of the measure; ``None`` when there is none to keep."""
         limit = self.request.limit
@@ -77,11 +89,11 @@ class Problem:
         return [tuple(self.kit.plates[digit - 1].face for digit in row if digit) for row in rows.tolist()]
 
 
-def prepare(request: PlanRequest) -> Problem:
+def prepare(request: PlanRequest, watch: Watch) -> Problem:
     """Check the request and list the count vectors. Raises :class:`Refusal` for what cannot be made."""
     check_request(request)
     kit = make_kit(request, shares(request.equipment, request.targets))
-    vectors = count_vectors(kit, request.extra_plates)
+    vectors, whole = _list_vectors(kit, request, watch)
     for target, share in zip(request.targets, kit.shares, strict=True):
         if not len(vectors[share]):
             raise refuse_weight(request.equipment, target)
@@ -101,7 +113,26 @@ def prepare(request: PlanRequest) -> Problem:
         start=start,
         prices=make_prices(request, kit, longest),
         alphabet=Alphabet.of(kit.kinds, max(int(row.sum(axis=1).max()) for row in rows)),
+        whole=whole,
     )
+
+
+def _list_vectors(kit: Kit, request: PlanRequest, watch: Watch) -> tuple[dict[int, Ints], bool]:
+    """All count vectors; or, where they are too many, those with fewer extra plates, or one a weight.
+
+    Fewer extra plates are allowed whenever more are, so what is planned with them is a plan; but comfort is
+    measured against the best of all stacks, so it cannot be judged without listing them.
+    """
+    for extra in range(request.extra_plates, -1, -1):
+        try:
+            return count_vectors(kit, extra, watch), extra == request.extra_plates
+        except TooLarge:
+            if request.comfort:
+                because = "There are too many stacks to compare their comfort; allow fewer extra plates."
+                raise bad_request("extra_plates", because) from None
+    if kit.room is not None:
+        raise bad_request("plates", "There are too many ways to make these weights within the room.")
+    return one_vector(kit), False
 
 
 def _chart_counts(kit: Kit, charts: list[Stack | None]) -> dict[int, Ints]:

@@ -10,9 +10,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from app.loading.equipment import Access
+from app.planning.watch import Watch
 
 Codes = NDArray[Any]  # int64, or Python integers where a stack needs more than 62 bits
 Places = NDArray[np.int64]
+
+# Of one node and one edge, copies in the parts and values of the sweeps included.
+NODE_BYTES, EDGE_BYTES = 100, 30
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,12 +111,15 @@ def open_places(access: Access, length: int) -> Sequence[int]:
     return range(length)
 
 
-def build_graph(alphabet: Alphabet, access: Access, families: Sequence[tuple[Codes, Places]]) -> Graph:
+def build_graph(
+    alphabet: Alphabet, access: Access, families: Sequence[tuple[Codes, Places]], watch: Watch
+) -> Graph:
     """The graph over some families of stacks, each given as (codes, lengths) in canonical order.
 
     A stack of n plates has one smaller neighbour with the outer end only (the graph is the tree of common
     insides), two with both ends (substrings), up to n with access anywhere (subsequences). Size and time are
-    linear in the number of different smaller stacks times their neighbours, but for sorting.
+    linear in the number of different smaller stacks times their neighbours, but for sorting. Raises
+    :class:`app.planning.watch.TooLarge` before it outgrows the budget.
     """
     longest = max((int(lengths.max(initial=0)) for _, lengths in families), default=0)
     known: list[Codes] = [np.zeros(0, alphabet.dtype)] * (longest + 1)
@@ -121,6 +128,8 @@ def build_graph(alphabet: Alphabet, access: Access, families: Sequence[tuple[Cod
         own = [codes[lengths == length] for codes, lengths in families]
         known[length] = np.unique(np.concatenate([*own, *removed[length]]))
         if length:
+            watch.check()
+            watch.room(sum(map(len, known)) * (NODE_BYTES + EDGE_BYTES * len(open_places(access, length))))
             for place in open_places(access, length):
                 removed[length - 1].append(alphabet.without(known[length], place))
     known[0] = np.zeros(1, alphabet.dtype)

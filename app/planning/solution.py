@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -33,17 +34,13 @@ class Solution:
 
 def priced(problem: Problem, stacks: Sequence[Kinds], *, bound: int | None = None) -> Solution:
     """The solution with these stacks, priced change by change."""
-    prices, alphabet = problem.prices, problem.alphabet
-    price = Distance(alphabet, problem.request.access, prices.off, prices.on)
-    codes = alphabet.write(digits(problem, [problem.kit.start, *stacks]))
-    rows = alphabet.read(codes)
-    total = worst = 0
-    for attempt, share in enumerate(problem.kit.shares, start=1):
-        change = int(price(codes[[attempt - 1]], codes[[attempt]])[0])
-        change += int(fee_of(problem, share, rows[[attempt]])[0])
-        total += change
-        worst = max(worst, change // prices.fold)
-    return Solution(tuple(stacks), total, worst, bound, kept_by(problem, worst))
+    prices = problem.prices
+    rows = digits(problem, [problem.kit.start, *stacks])
+    changes = Distance(problem.request.access, prices.off, prices.on)(rows[:-1], rows[1:])
+    fees = [fee_of(problem, share, rows[[at]])[0] for at, share in enumerate(problem.kit.shares, start=1)]
+    costs = [int(change + fee) for change, fee in zip(changes, fees, strict=True)]
+    worst = max((cost // prices.fold for cost in costs), default=0)
+    return Solution(tuple(stacks), sum(costs), worst, bound, kept_by(problem, worst))
 
 
 def kept_by(problem: Problem, worst: int) -> bool | None:
@@ -60,6 +57,6 @@ def digits(problem: Problem, stacks: Sequence[Kinds]) -> NDArray[np.int64]:
     return rows
 
 
-def kinds(rows: NDArray[np.int8]) -> list[Kinds]:
+def kinds(rows: NDArray[Any]) -> list[Kinds]:
     """Rows of digits as stacks of kinds."""
     return [tuple(digit - 1 for digit in row if digit) for row in rows.tolist()]

@@ -140,10 +140,6 @@ class Stays:
         self.fees = [self._fees(course, part, times) for part, times in runs]
         self.table: list[Numbers] = []
 
-    def bytes_needed(self) -> int:
-        """How much the table takes."""
-        return len(self.runs) * (len(self.runs) + 3) // 2 * (len(self.insides) + 1) * 8
-
     def _fees(self, course: Course, part: int, times: int) -> Numbers:
         """The fee of every inside that makes this part's weight, ``never`` for the rest."""
         never = self.problem.prices.never
@@ -154,6 +150,7 @@ class Stays:
 
     def fill(self) -> None:
         """The table: ``table[n][i, K]`` is F(i, i + n, K)."""
+        self.watch.room(len(self.runs) * (len(self.runs) + 3) // 2 * (len(self.insides) + 1) * 8)
         for length in range(len(self.runs)):
             self.watch.check()
             starts = len(self.runs) - length

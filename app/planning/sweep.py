@@ -4,15 +4,18 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
+from functools import cached_property
+from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from app.planning.prices import Numbers
-from app.planning.smaller import Codes, Graph, Part, Places
+from app.planning.smaller import Graph, Part, Places
 from app.planning.watch import Watch
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Course:
     """Attempts as indices of the graph's parts, the start (part 0) first; what each stack costs in itself
     (``fee[part]``: threading and distance to the chart); and what it takes to come from what stands on the
@@ -26,9 +29,13 @@ class Course:
     def part(self, attempt: int) -> Part:
         return self.graph.parts[self.attempts[attempt]]
 
-    def stacks(self, attempt: int) -> Codes:
-        """Codes of the stacks of an attempt."""
-        return self.graph.codes[self.part(attempt).ends]
+    def rows(self, attempt: int) -> NDArray[np.int8]:
+        """The stacks of an attempt as rows of digits."""
+        return self._rows[self.attempts[attempt]]
+
+    @cached_property
+    def _rows(self) -> list[NDArray[np.int8]]:
+        return [self.graph.alphabet.read(self.graph.codes[part.ends]) for part in self.graph.parts]
 
 
 class Sweep:
@@ -104,8 +111,8 @@ def least_total(course: Course, sweep: Sweep, watch: Watch) -> list[Numbers]:
     return reached
 
 
-Pricer = Callable[[Codes, Codes], Numbers]
-"""Prices of changes from many stacks to one."""
+Pricer = Callable[[NDArray[Any], NDArray[Any]], Numbers]
+"""Prices of changes from many stacks to one (rows of digits)."""
 
 
 def way_back(
@@ -122,8 +129,8 @@ def way_back(
         fee = course.fee[course.attempts[attempt]][place]
         wanted = reached[attempt][place] - fee
         most = wanted if within is None else (within[0] - fee // within[1] + 1) * within[1] - 1
-        stack = course.stacks(attempt)[[place]]
-        before, stacks = reached[attempt - 1], course.stacks(attempt - 1)
+        stack = course.rows(attempt)[[place]]
+        before, stacks = reached[attempt - 1], course.rows(attempt - 1)
         for some in _in_pieces(np.flatnonzero(before <= wanted)):
             prices = price(stacks[some], stack)
             # The way to a stack of part 0 belongs to the first change.

@@ -1,4 +1,4 @@
-"""The clock of one plan, if there is one."""
+"""The clock and the room of one plan."""
 
 from __future__ import annotations
 
@@ -6,17 +6,27 @@ from app.planning.budget import Budget
 
 
 class OutOfTime(Exception):
-    """The seconds of the budget are over."""
+    """The seconds of the budget are over: the best plan so far is answered."""
+
+
+class TooLarge(Exception):
+    """An exact way would need more memory than the budget has: a plan with a bound is answered."""
 
 
 class Watch:
-    """Started when made. Without a clock in the budget it never runs out."""
+    """Started when made. Without a clock in the budget it never runs out of time."""
 
     def __init__(self, budget: Budget) -> None:
         self.clock = budget.monotonic
         self.end = budget.monotonic() + budget.seconds if budget.monotonic else 0.0
+        self.memory_bytes = budget.memory_bytes
 
     def check(self) -> None:
         """Raise :class:`OutOfTime` once the seconds are over."""
         if self.clock is not None and self.clock() > self.end:
             raise OutOfTime
+
+    def room(self, needed_bytes: int) -> None:
+        """Raise :class:`TooLarge` when an array would not fit the budget."""
+        if needed_bytes > self.memory_bytes:
+            raise TooLarge

@@ -18,7 +18,7 @@ __all__ = ["by_counts", "by_stays", "by_sweep", "counts_are_enough", "sorted_onl
 
 def by_counts(problem: Problem, watch: Watch) -> Solution:
     """Choose count vectors, then leave in place what need not move: where the counts are enough."""
-    course = count_course(problem)
+    course = count_course(problem, watch)
     chain, kept = best_chain(problem, course, Access.ANYWHERE, watch)
     counts = counts_of(problem.alphabet.read(course.graph.codes[chain[1:]]), problem.kit.kinds)
     return _with(priced(problem, leave_in_place(problem, counts.tolist())), kept)
@@ -38,19 +38,19 @@ def stays_apply(problem: Problem) -> bool:
 
 def by_stays(problem: Problem, watch: Watch) -> Solution:
     """The least total by nested stays; with a limit, exact only if the limit happens to be kept."""
-    return priced(problem, best_by_stays(Stays(problem, count_course(problem), watch)))
+    return priced(problem, best_by_stays(Stays(problem, count_course(problem, watch), watch)))
 
 
 def by_sweep(problem: Problem, watch: Watch) -> Solution:
     """The plain sweep over all stacks: always exact, as large as the stacks are many."""
-    course = stack_course(problem)
+    course = stack_course(problem, watch)
     chain, kept = best_chain(problem, course, problem.request.access, watch)
     return _with(priced(problem, kinds(problem.alphabet.read(course.graph.codes[chain[1:]]))), kept)
 
 
 def sorted_only(problem: Problem, watch: Watch) -> Solution:
     """The best chain among stacks in one order only: a plan, not a proof. Not where balance counts."""
-    course = sorted_course(problem)
+    course = sorted_course(problem, watch)
     chain, _ = best_chain(problem, course, problem.request.access, watch)
     return priced(problem, kinds(problem.alphabet.read(course.graph.codes[chain[1:]])))
 

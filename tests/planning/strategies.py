@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from fractions import Fraction
 
+from hypothesis import settings
 from hypothesis import strategies as st
 
 from app.loading.equipment import Collar, Equipment, Implement, Plate
@@ -13,6 +14,11 @@ KG_FACES = ["25", "20", "15", "10", "5", "2.5", "1.25", "0.5", "0.25"]
 LB_FACES = ["45", "35", "25", "10", "5", "2.5"]
 MIXED = ["20", "11.33980925", "10", "4.5359237", "5", "1.25"]
 ENOUGH_ORDERS = 40
+
+
+def a_fifth() -> settings:
+    """For properties tried once for every combination: a fifth of the profile's cases for each."""
+    return settings(max_examples=settings().max_examples // 5)
 
 
 def fractions(*words: str) -> st.SearchStrategy[Fraction]:

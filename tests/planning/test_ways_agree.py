@@ -10,7 +10,7 @@ from app.planning.problem import Problem, prepare
 from app.planning.solution import Solution
 from app.planning.watch import Watch
 from app.planning.ways import by_counts, by_stays, by_sweep, counts_are_enough, sorted_only, stays_apply
-from tests.planning.strategies import requests
+from tests.planning.strategies import a_fifth, requests
 
 FREE = [order for order in Order if order is not Order.HEAVIEST_INSIDE]
 WATCH = Watch(Budget())
@@ -19,7 +19,7 @@ WATCH = Watch(Budget())
 def prepared(request: PlanRequest) -> Problem:
     assume(request.targets)
     try:
-        return prepare(request)
+        return prepare(request, WATCH)
     except Refusal:
         assume(False)
         raise
@@ -41,6 +41,7 @@ def test_count_vectors_are_enough_where_any_plate_can_be_moved(request: PlanRequ
 
 @pytest.mark.parametrize("order", FREE)
 def test_nested_stays_find_the_least_total_of_a_sleeve(order: Order) -> None:
+    @a_fifth()
     @given(
         requests(order=order, access=Access.OUTER_END, aim=Aim.TOTAL, comfort=(), limit=None, most_targets=7)
     )
@@ -55,6 +56,7 @@ def test_nested_stays_find_the_least_total_of_a_sleeve(order: Order) -> None:
 @pytest.mark.parametrize("access", Access)
 @pytest.mark.parametrize("order", FREE)
 def test_the_guided_sweep_finds_the_best_chain_however_narrow_it_starts(order: Order, access: Access) -> None:
+    @a_fifth()
     @given(requests(order=order, access=access, most_targets=6), st.sampled_from([1, 3, 1000]))
     def holds(request: PlanRequest, width: int) -> None:
         assume(all(rule.by is not ComfortBy.BALANCE for rule in request.comfort))
