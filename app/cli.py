@@ -11,6 +11,8 @@ from collections.abc import Sequence
 from pathlib import Path
 
 import uvicorn
+from alembic.util.exc import CommandError
+from sqlalchemy.exc import SQLAlchemyError
 
 from app.desk.demo import make_demo
 from app.desk.entry import Desk
@@ -83,9 +85,9 @@ def _run(chosen: argparse.Namespace, *, demo: bool) -> int:
         desk = Desk(make_engine(url), QuietHub(), utc_now)
         if demo:
             make_demo(desk, PROJECT / "demo_meet")
-    except (OSError, sqlite3.Error) as error:
+    except (OSError, sqlite3.Error, SQLAlchemyError, CommandError) as error:
         return _fail(
-            f"The data folder {chosen.data} cannot be used: {error}. Choose another with --data FOLDER."
+            f"The data folder {chosen.data} cannot be used: {_why(error)}. Choose another with --data FOLDER."
         )
     _say_addresses(desk, chosen.host, chosen.port, database.parent)
     desk.engine.dispose()
@@ -99,6 +101,13 @@ def _run(chosen: argparse.Namespace, *, demo: bool) -> int:
         log_level="warning",
     )
     return 0
+
+
+def _why(error: Exception) -> str:
+    """The reason in one line, without the statement that failed."""
+    if isinstance(error, CommandError):
+        return "its meet was made by another version of Platewright"
+    return str(getattr(error, "orig", None) or error).partition("\n")[0].rstrip(".")
 
 
 def _trouble_with_port(host: str, port: int) -> str:

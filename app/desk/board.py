@@ -5,7 +5,6 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
-from typing import Any
 
 from app.desk.entry import Desk
 from app.desk.planned import must_ask, plan_for, wish_of
@@ -34,6 +33,7 @@ class Step:
     before: Stack | None
     stack: Stack | None
     access: Access
+    why: str = ""
 
     @property
     def hands(self) -> HandList | None:
@@ -142,32 +142,24 @@ def _looked_at(now: Picture, flight_id: int | None, lift_id: int | None) -> tupl
     return None
 
 
+Loads = dict[int, tuple[Fraction, Stack, str]]
+"""By attempt: the weight a stack was planned for, the stack, and why it is not the chart's."""
+
+
 def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment, access: Access) -> Iterator[Step]:
     """The steps of the lift that is on: the change in hand first, then the stored plan, each from the one before."""
-    stacks = {step["attempt"]: (parse_mass(step["weight"]), to_stack(step["stack"])) for step in _stored(now)}
-    hand = now.bar.hand
-    carries = now.bar.carries
-    if hand is not None and not must_ask(now.bar, order, equipment):
-        turn = up_next(now.bar, order)
-        if turn is not None:
-            yield Step(turn, hand.before, hand.stack, access)
-            carries = hand.stack
-    for turn in order:
-        if (
-            hand is not None
-            and turn.attempt.id == hand.attempt_id
-            and not must_ask(now.bar, order, equipment)
-        ):
-            continue
-        weight, stack = stacks.get(turn.attempt.id, (None, None))
-        if weight != turn.weight:
-            stack = None
-        yield Step(turn, carries, stack, access)
-        carries = stack if stack is not None else carries
-
-
-def _stored(now: Picture) -> list[dict[str, Any]]:
-    return [] if now.plan is None else now.plan["steps"]
+    stored = [] if now.plan is None else now.plan["steps"]
+    loads: Loads = {
+        step["attempt"]: (parse_mass(step["weight"]), to_stack(step["stack"]) or (), step.get("why", ""))
+        for step in stored
+    }
+    hand, up = now.bar.hand, up_next(now.bar, order)
+    if hand is None or up is None or must_ask(now.bar, order, equipment):
+        yield from _chain(order, loads, now.bar.carries, access)
+        return
+    yield Step(up, hand.before, hand.stack, access, hand.why)
+    rest = [turn for turn in order if turn.attempt.id != up.attempt.id]
+    yield from _chain(rest, loads, hand.stack, access)
 
 
 def _fresh_steps(
@@ -177,11 +169,20 @@ def _fresh_steps(
     equipment = now.equipment(lift.id)
     turns = [turn for turn in order if loadable(equipment, turn.weight)]
     made = plan_for(now, lift.id, (), turns, budget)
-    stacks = {} if made is None else {t.attempt.id: c.stack for t, c in zip(turns, made.changes, strict=True)}
-    carries: Stack = ()
+    loads: Loads = {}
+    if made is not None:
+        for turn, change, reason in zip(turns, made.plan.changes, made.why, strict=True):
+            loads[turn.attempt.id] = (turn.weight, change.stack, reason or "")
+    yield from _chain(order, loads, (), access)
+
+
+def _chain(order: Sequence[Turn], loads: Loads, carries: Stack | None, access: Access) -> Iterator[Step]:
+    """Each turn from the stack of the one before; a stack planned for another weight is none."""
     for turn in order:
-        stack = stacks.get(turn.attempt.id)
-        yield Step(turn, carries, stack, access)
+        weight, stack, why = loads.get(turn.attempt.id, (None, None, ""))
+        if weight != turn.weight:
+            stack, why = None, ""
+        yield Step(turn, carries, stack, access, why)
         carries = stack if stack is not None else carries
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from dataclasses import replace
 from enum import StrEnum
 from fractions import Fraction
 from typing import TypeVar
@@ -11,11 +12,15 @@ from app.desk.entry import Desk, Work, platform_entry
 from app.desk.equipment import Form
 from app.desk.errors import NotAllowedNow
 from app.desk.planned import wish_of
-from app.desk.wish import Wish, plan_request, wish_document
+from app.desk.wish import Wish, plan_request, ready_made, wish_document
+from app.loading.chart import loadable
 from app.loading.equipment import Access, Order
 from app.loading.mass import show_mass
-from app.planning import Aim, ComfortBy, Measure, Refusal
-from app.store.picture import Picture, get
+from app.meet.model import Result
+from app.planning import Aim, Budget, ComfortBy, Frontier, Measure, Refusal, frontier
+from app.planning.belts import BELT_COMFORT
+from app.store.engine import reading
+from app.store.picture import Picture, get, picture
 from app.store.tables import LiftRow
 
 COMFORT_ROWS = 4
@@ -70,6 +75,45 @@ def keep_wish(desk: Desk, platform_id: int, lift_id: int, wish: Wish, *, who: st
         if wish_of(now, lift_id) != wish:
             row.loading = document
         work.what = f"{row.name}: how it is loaded"
+
+
+def use_ready_made(desk: Desk, platform_id: int, lift_id: int, name: str, *, who: str) -> None:
+    """Order and comfort of a belt lift from the ready-made settings; everything else stays as it is."""
+    if name not in BELT_COMFORT:
+        raise NotAllowedNow(f"Choose one of the ready-made settings: {', '.join(BELT_COMFORT)}.")
+    with reading(desk.engine) as session:
+        standing = wish_of(picture(session, platform_id), lift_id)
+    made = ready_made(name)
+    keep_wish(desk, platform_id, lift_id, replace(standing, order=made.order, comfort=made.comfort), who=who)
+
+
+def use_choice(
+    desk: Desk, platform_id: int, lift_id: int, extra_plates: str, aim: str, measure: str, *, who: str
+) -> None:
+    """What shall be small, as picked from the table of figures; everything else stays as it is."""
+    picked = {"extra_plates": extra_plates, "aim": aim, "measure": measure}
+    if any(value not in WORDS[name] for name, value in picked.items()):
+        raise NotAllowedNow("Pick a row of the table of figures.")
+    with reading(desk.engine) as session:
+        standing = wish_of(picture(session, platform_id), lift_id)
+    wish = replace(standing, extra_plates=int(extra_plates), aim=Aim(aim), measure=Measure(measure))
+    keep_wish(desk, platform_id, lift_id, wish, who=who)
+
+
+def figures(desk: Desk, platform_id: int, lift_id: int, flight_id: int, budget: Budget) -> Frontier | None:
+    """What each choice would cost on everything known of a flight's lift, from an empty bar; None if nothing is.
+
+    Weights nobody has handed in stand in at their default, so that the table can be looked at the day before.
+    """
+    with reading(desk.engine) as session:
+        now = picture(session, platform_id)
+    programme = now.programme(lift_id)
+    equipment = now.equipment(lift_id)
+    unlifted = replace(programme, attempts=tuple(replace(a, result=Result.OPEN) for a in programme.attempts))
+    targets = [turn.weight for turn in unlifted.order(flight_id, lift_id) if loadable(equipment, turn.weight)]
+    if not targets:
+        return None
+    return frontier(plan_request(now.unit, equipment, wish_of(now, lift_id), (), targets), budget)
 
 
 def _lift(work: Work, now: Picture, lift_id: int) -> LiftRow:

@@ -21,7 +21,18 @@ from app.store.meet_file import WrongMeetFile, load_meet, meet_text
 from app.store.picture import Picture, get, key
 from app.store.tables import JournalRow, MeetRow, PlatformRow
 
-RESULT_COLUMNS = ("platform", "session", "flight", "lot", "lifter", "body weight", "lift", "attempt", "weight", "result")
+RESULT_COLUMNS = (
+    "platform",
+    "session",
+    "flight",
+    "lot",
+    "lifter",
+    "body weight",
+    "lift",
+    "attempt",
+    "weight",
+    "result",
+)
 JOURNAL_COLUMNS = ("number", "at", "who", "what", "platform", "revision", "undoes")
 
 

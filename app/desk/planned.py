@@ -17,6 +17,7 @@ from app.meet.horizon import Programme, horizon
 from app.meet.order import Turn
 from app.meet.platform import Bar, Hand, overtaken
 from app.planning import Budget, Plan, Refusal, plan
+from app.planning.why import why
 from app.store.picture import Picture, faces
 
 log = logging.getLogger("platewright.plan")
@@ -68,9 +69,17 @@ def situation(now: Picture, bar: Bar) -> Situation | None:
     )
 
 
+@dataclass(frozen=True, slots=True)
+class Made:
+    """A plan, and for each of its stacks that is not the wall chart's the reason in a sentence."""
+
+    plan: Plan
+    why: tuple[str | None, ...]
+
+
 def plan_for(
     now: Picture, lift_id: int, start: Stack | None, turns: Sequence[Turn], budget: Budget
-) -> Plan | None:
+) -> Made | None:
     """The plan for these turns from this start; None where there is nothing to plan.
 
     A start that is not in the stock any more (a plate was taken away while it hung there) is planned as if
@@ -81,8 +90,11 @@ def plan_for(
     equipment = now.equipment(lift_id)
     from_here = start if start is not None and owned(equipment, start) else ()
     targets = [turn.weight for turn in turns]
+    wish = wish_of(now, lift_id)
     try:
-        return plan(plan_request(now.unit, equipment, wish_of(now, lift_id), from_here, targets), budget)
+        request = plan_request(now.unit, equipment, wish, from_here, targets)
+        made = plan(request, budget, wish.departure)
+        return Made(made, why(made, request))
     except Refusal as refused:
         # An entry must not be lost because its plan cannot be made: the crew is told that the load is missing.
         log.exception("no plan for %s: %s", now.platform, refused.because)
@@ -114,15 +126,20 @@ def owned(equipment: Equipment, stack: Stack) -> bool:
     return all(stack.count(face) <= have.get(face, 0) for face in set(stack))
 
 
-def stored_plan(made: Plan | None, turns: Sequence[Turn], skip: int = 0) -> dict[str, Any] | None:
+def stored_plan(made: Made | None, turns: Sequence[Turn], skip: int = 0) -> dict[str, Any] | None:
     """The plan as the platform's row keeps it; the first ``skip`` steps have become the instruction."""
     if made is None:
         return None
-    pairs = list(zip(turns, made.changes, strict=True))[skip:]
+    steps = list(zip(turns, made.plan.changes, made.why, strict=True))[skip:]
     return {
         "steps": [
-            {"attempt": turn.attempt.id, "weight": show_mass(turn.weight), "stack": faces(change.stack)}
-            for turn, change in pairs
+            {
+                "attempt": turn.attempt.id,
+                "weight": show_mass(turn.weight),
+                "stack": faces(change.stack),
+                "why": reason or "",
+            }
+            for turn, change, reason in steps
         ],
-        "proved": made.proof == "optimal",
+        "proved": made.plan.proof == "optimal",
     }

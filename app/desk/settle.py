@@ -36,7 +36,7 @@ def settle(session: Session, platform_id: int, budget: Budget) -> None:
     turns = here.turns
     made = plan_for(now, here.lift_id, here.start, turns, budget)
     if made is not None and _may_instruct(bar, here.order, turns):
-        bar = instruct(bar, turns[0], made.changes[0].stack)
+        bar = instruct(bar, turns[0], made.plan.changes[0].stack, made.why[0] or "")
         row.plan = stored_plan(made, turns, skip=1)
     else:
         row.plan = stored_plan(made, turns)

@@ -3,11 +3,14 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from typing import Any
 
 from sqlmodel import select
 
 from app.desk.entry import Desk, meet_entry
 from app.desk.errors import NotAllowedNow
+from app.desk.wish import Wish, wish_document
+from app.loading.equipment import Order
 from app.meet.presets import PRESETS, Preset, exact, preset
 from app.store.picture import get, key
 from app.store.tables import ImplementRow, LiftRow, MeetRow, PlateRow, PlatformRow, SessionRow
@@ -64,12 +67,20 @@ def add_platform(desk: Desk, meet_id: int, name: str, preset_key: str, *, who: s
                 position=place,
                 implement_id=key(tools[lift.tool]),
                 step=Fraction(lift.step),
-                loading={},
+                loading=_loading(chosen),
             )
             for place, lift in enumerate(chosen.lifts)
         )
         work.what = f"platform {name} set up: {chosen.name}"
         return platform_id
+
+
+def _loading(chosen: Preset) -> dict[str, Any]:
+    """How the lifts of a preset are loaded: a belt's stack may stand in any order, a bar's heaviest inside.
+
+    No comfort rules to begin with: what they cost the crew is a choice to be made from the figures.
+    """
+    return {} if chosen.tools[0].kind == "bar" else wish_document(Wish(order=Order.ANY))
 
 
 def _preset(preset_key: str, unit: str) -> Preset:

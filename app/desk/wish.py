@@ -9,7 +9,8 @@ from typing import Any
 
 from app.loading.equipment import Access, Equipment, Order, Stack
 from app.loading.mass import parse_mass, show_mass
-from app.planning import Aim, Measure, PlanRequest, parse_request
+from app.planning import Aim, Departure, Measure, PlanRequest, parse_request
+from app.planning.belts import BELT_COMFORT
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,6 +30,21 @@ class Wish:
     chart_only: bool = False
     least_plates: int = 0
     least_mass: Fraction = field(default_factory=Fraction)
+
+    @property
+    def departure(self) -> Departure:
+        """When the plan may leave the loading chart that everybody knows by sight."""
+        return Departure(self.chart_only, self.least_plates or None, self.least_mass or None)
+
+
+def ready_made(key: str) -> Wish:
+    """Settings for a belt lift to start from (common practice): any order, by the comfort of the lift.
+
+    The chain is taken to be opened at one end only, which is right for every belt; where both ends open, the
+    director says so.
+    """
+    comfort = tuple((rule.by.value, show_mass(rule.slack)) for rule in BELT_COMFORT[key])
+    return Wish(order=Order.ANY, comfort=comfort)
 
 
 def read_wish(stored: Mapping[str, Any]) -> Wish:

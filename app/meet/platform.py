@@ -33,13 +33,15 @@ class Condition(StrEnum):
 class Hand:
     """The change that the crew has been shown: from ``before`` to ``stack``, for one attempt at one weight.
 
-    ``before`` is None when the bar was unknown: then the bar is stripped and built from empty.
+    ``before`` is None when the bar was unknown: then the bar is stripped and built from empty. ``why`` says
+    in a sentence why the stack is not the wall chart's; "" where it is.
     """
 
     attempt_id: int
     weight: Fraction
     before: Stack | None
     stack: Stack
+    why: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,9 +80,9 @@ def overtaken(bar: Bar, order: Sequence[Turn]) -> bool:
     return turn is None or turn.attempt.id != bar.hand.attempt_id or turn.weight != bar.hand.weight
 
 
-def instruct(bar: Bar, turn: Turn, stack: Stack) -> Bar:
+def instruct(bar: Bar, turn: Turn, stack: Stack, why: str = "") -> Bar:
     """Give the crew its next change, from what is on the bar now. Freezes it."""
-    hand = Hand(turn.attempt.id, turn.weight, bar.carries, stack)
+    hand = Hand(turn.attempt.id, turn.weight, bar.carries, stack, why)
     return Bar(Condition.CHANGING, bar.carries, hand)
 
 

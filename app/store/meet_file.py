@@ -50,7 +50,7 @@ Numbers = dict[str, dict[int, int]]
 """By table: the id in the database → the number in the document."""
 
 
-class WrongMeetFile(ValueError):  # noqa: N818 - named by what it is about
+class WrongMeetFile(ValueError):
     """A document that is no meet, or not a whole one; the message is one plain sentence."""
 
 

@@ -273,6 +273,7 @@ def to_bar(row: PlatformRow) -> Bar:
             weight=parse_mass(row.hand["weight"]),
             before=to_stack(row.hand["before"]),
             stack=to_stack(row.hand["stack"]) or (),
+            why=row.hand.get("why", ""),
         )
     return Bar(Condition(row.condition), to_stack(row.bar), hand)
 
@@ -289,6 +290,7 @@ def store_bar(row: PlatformRow, bar: Bar) -> None:
             "weight": show_mass(bar.hand.weight),
             "before": None if bar.hand.before is None else faces(bar.hand.before),
             "stack": faces(bar.hand.stack),
+            "why": bar.hand.why,
         },
     }
     for column, value in stored.items():

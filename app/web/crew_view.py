@@ -148,7 +148,7 @@ def _change_in_hand(one: Board) -> ChangeView | None:
     hand, turn = one.now.bar.hand, _shown_turn(one)
     if hand is None or turn is None:
         return None
-    return change_view(one, Step(turn, hand.before, hand.stack, one.wish.access))
+    return change_view(one, Step(turn, hand.before, hand.stack, one.wish.access, hand.why))
 
 
 def change_view(one: Board, step: Step) -> ChangeView | None:
@@ -164,6 +164,7 @@ def change_view(one: Board, step: Step) -> ChangeView | None:
         from_empty=step.before is None,
         end=end,
         how=where_words(hands, step.before or (), step.stack, step.access),
+        why=step.why,
     )
 
 

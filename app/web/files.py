@@ -62,5 +62,7 @@ def take_meet(request: Request, desk: DeskDep, file: Annotated[UploadFile, File(
     try:
         text = data.decode("utf-8")
     except UnicodeDecodeError:
-        raise NotAllowedNow("The file is not text, so it is no meet file. Choose the meet.json that was saved.") from None
+        raise NotAllowedNow(
+            "The file is not text, so it is no meet file. Choose the meet.json you saved."
+        ) from None
     return htmx.go_to(request, f"/meets/{meet_file.import_meet(desk, text)}")

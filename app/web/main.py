@@ -29,6 +29,7 @@ from app.web import (
     cards,
     crew,
     equipment,
+    files,
     home,
     htmx,
     lift_page,
@@ -78,7 +79,20 @@ def create_app(database_url: str, clock: Clock = utc_now) -> FastAPI:
 
     app = FastAPI(title="Platewright", lifespan=lifespan, docs_url=None, redoc_url=None)
     app.mount("/static", StaticFiles(directory=PROJECT / "static"), name="static")
-    for router in (home, roster, equipment, lift_page, rules_page, table, crew, screens, cards, live, plan_api):
+    for router in (
+        home,
+        files,
+        roster,
+        equipment,
+        lift_page,
+        rules_page,
+        table,
+        crew,
+        screens,
+        cards,
+        live,
+        plan_api,
+    ):
         app.include_router(router.router)
     app.middleware("http")(_guard)
     app.add_exception_handler(DeskError, _desk_error)

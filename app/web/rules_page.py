@@ -89,7 +89,9 @@ def _render(
     )
 
 
-def _view(now: Picture, session_id: int | None, preset: str | None, typed: Mapping[str, str] | None) -> RulesView:
+def _view(
+    now: Picture, session_id: int | None, preset: str | None, typed: Mapping[str, str] | None
+) -> RulesView:
     sessions = tuple((number, name) for number, name, _ in now.sessions)
     wanted = session_id if session_id is not None else sessions[0][0] if sessions else 0
     if wanted not in now.rules:
@@ -105,7 +107,13 @@ def _view(now: Picture, session_id: int | None, preset: str | None, typed: Mappi
     for setting in SETTINGS:
         given = start.value(setting.key, now.unit)
         value = values.get(setting.key, given)
-        row = Row(setting, value, _said(setting, given, now.unit), start.source(setting.key, now.unit), value != given)
+        row = Row(
+            setting,
+            value,
+            _said(setting, given, now.unit),
+            start.source(setting.key, now.unit),
+            value != given,
+        )
         groups[setting.group] = (*groups.get(setting.group, ()), row)
     return RulesView(
         platform_id=now.platform_id,
@@ -151,5 +159,3 @@ async def save_rules(request: Request, platform_id: int, desk: DeskDep, official
             status=refused.status_code,
         )
     return _render(request, desk, platform_id, official, session_id, said=said)
-
-

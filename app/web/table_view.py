@@ -45,6 +45,7 @@ class OrderRow:
     on: tuple[PlateView, ...]
     change: str  # "no change", "cannot be made", "build from empty", or "" when off and on say it
     rack: str
+    why: str = ""  # why the stack is not the chart's
 
 
 @dataclass(frozen=True, slots=True)
@@ -266,6 +267,7 @@ def _order_row(one: Board, step: Step, place: int, new_round: bool) -> OrderRow:
         on=plate_views(hands.on, one.now) if hands else (),
         change=_change_words(step, ask=one.ask and up),
         rack=one.now.racks.get((turn.lifter.id, one.lift.id), ""),
+        why=step.why,
     )
 
 

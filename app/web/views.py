@@ -63,6 +63,7 @@ class ChangeView:
     from_empty: bool  # a full build: take everything off first, then this
     end: EndView
     how: str = ""  # which place in the stack each plate leaves or takes, where it is not simply the outer end
+    why: str = ""  # why the stack is not the chart's; "" where it is
 
 
 @dataclass(frozen=True, slots=True)

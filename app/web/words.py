@@ -114,7 +114,9 @@ def whole_words(equipment: Equipment, stack: Stack, tool: Tool) -> str:
     side, base = sum(stack, Fraction(0)), equipment.base_mass
     whole = show_mass(base + tool.implement.ends * side)
     if tool.implement.ends == 1:
-        return f"{show_mass(side)} + {show_mass(base)} = {whole}" if base else ""  # the stack's sum is all of it
+        return (
+            f"{show_mass(side)} + {show_mass(base)} = {whole}" if base else ""
+        )  # the stack's sum is all of it
     return f"2 × {show_mass(side)} + {show_mass(base)} = {whole}"
 
 
