@@ -16,6 +16,9 @@ Etta Frost       5  Flight B   160     110          190
 Flight A is on, lifting Squat, and the crew has been shown the first change: 100 kg for Ada. Bo and Cleo want the same
 weight: Bo has the lower lot and lifts first. Nobody else has declared anything.
 
+The second platform, where a test asks for one, is *Stage*, with belt and chain: Flight C (Livia Corran, lot 21, and
+Kofi Lund, lot 28) opens the muscle-up with 0 and 10 kg and the pull-up with 18.75 and 43.75.
+
 **Wanda** writes at the table, **Luc** loads, **Olga** organises, **Otto** sits at another table and is always
 the other one in a race.
 
@@ -41,6 +44,7 @@ from app.desk.hub import Hub, QuietHub
 from app.desk.roster import import_roster
 from app.desk.setup import add_platform, start_meet
 from app.meet.model import Attempt, Lifter, Result
+from app.planning import Budget
 from app.store.engine import make_engine, reading
 from app.store.picture import Picture, picture
 from app.store.tables import JournalRow
@@ -57,6 +61,12 @@ Bo Carver,1,Flight A,74.2,110,11,70,130
 Cleo Dahl,2,Flight A,68.0,110,10,65,140
 Dov Ekman,4,Flight B,93.1,150,14,100,180
 Etta Frost,5,Flight B,88.4,160,13,110,190
+"""
+
+BELT_ROSTER = """\
+name,lot,flight,body weight,Muscle-up opener,Pull-up opener
+Livia Corran,21,Flight C,56.3,0,18.75
+Kofi Lund,28,Flight C,68.9,10,43.75
 """
 
 START = datetime(2026, 3, 7, 9, 0, tzinfo=UTC)
@@ -84,8 +94,8 @@ class Clock:
 
 
 def open_desk(file: Path, hub: Hub | None = None) -> Desk:
-    """A desk over a database file that is up to date."""
-    return Desk(make_engine(f"sqlite:///{file}"), hub or QuietHub(), Clock())
+    """A desk over a database file that is up to date. It plans as long as a proof takes: no clock decides a test."""
+    return Desk(make_engine(f"sqlite:///{file}"), hub or QuietHub(), Clock(), Budget())
 
 
 @dataclass
