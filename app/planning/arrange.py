@@ -77,20 +77,35 @@ def comfortable_vectors(kit: Kit, request: PlanRequest, vectors: Ints) -> Ints:
     return vectors
 
 
-def family(kit: Kit, request: PlanRequest, alphabet: Alphabet, vectors: Ints) -> Family:
-    """The stacks of one weight, given its count vectors after :func:`comfortable_vectors`."""
+def families(kit: Kit, request: PlanRequest, alphabet: Alphabet, vectors: Sequence[Ints]) -> list[Family]:
+    """The stacks of every weight, given its count vectors after :func:`comfortable_vectors`."""
     if request.order is Order.HEAVIEST_INSIDE:
-        rows = sorted_digits(alphabet, vectors, inside_first(kit, request))
-        codes = alphabet.write(rows)
+        codes = one_order(kit, request, alphabet, vectors)
     else:
-        codes = all_orders(kit, request.order, alphabet, vectors)
-    codes = np.sort(codes)
+        codes = [np.sort(all_orders(kit, request.order, alphabet, rows)) for rows in vectors]
     rest = request.comfort[leading_thickness(request) :]
-    return comfortable_family(kit, alphabet, codes, rest)
+    return comfortable_families(kit, alphabet, codes, rest)
 
 
-def comfortable_family(kit: Kit, alphabet: Alphabet, codes: Codes, rules: Sequence[Comfort]) -> Family:
-    """The stacks that pass the rules, one after another, with their lengths."""
+def one_order(kit: Kit, request: PlanRequest, alphabet: Alphabet, vectors: Sequence[Ints]) -> list[Codes]:
+    """Codes of one stack for each count vector, by :func:`inside_first`, in canonical order."""
+    digits = sorted_digits(alphabet, np.concatenate(vectors), inside_first(kit, request))
+    cuts = np.cumsum([len(rows) for rows in vectors])[:-1]
+    return [np.sort(codes) for codes in np.split(alphabet.write(digits), cuts)]
+
+
+def comfortable_families(
+    kit: Kit, alphabet: Alphabet, codes: Sequence[Codes], rules: Sequence[Comfort]
+) -> list[Family]:
+    """The stacks of every weight that pass the rules, one rule after another, with their lengths."""
+    if rules:
+        return [_comfortable(kit, alphabet, some, rules) for some in codes]
+    lengths = alphabet.lengths(np.concatenate(codes))
+    cuts = np.cumsum([len(some) for some in codes])[:-1]
+    return list(zip(codes, np.split(lengths, cuts), strict=True))
+
+
+def _comfortable(kit: Kit, alphabet: Alphabet, codes: Codes, rules: Sequence[Comfort]) -> Family:
     rows = alphabet.read(codes)
     for rule in rules:
         kept = keep_comfortable(kit, rows, rule)

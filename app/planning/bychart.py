@@ -10,24 +10,36 @@ import numpy as np
 from app.planning.arrange import inside_first, sorted_digits
 from app.planning.course import comfort_bars, comfortable
 from app.planning.problem import Problem
+from app.planning.refusal import bad_request
 from app.planning.request import Aim, ComfortBy
 from app.planning.smaller import Alphabet
 from app.planning.solution import Kinds, Solution, kinds, priced
 
 
 def by_chart(problem: Problem) -> Solution:
-    """The chart's stack at every attempt; where it has none, the first allowed stack of the fewest plates."""
+    """The chart's stack at every attempt, whatever the rules about extra plates and comfort; where there is
+    none, as :func:`by_rule`."""
     place = {plate.face: kind for kind, plate in enumerate(problem.kit.plates)}
-    stacks = []
-    for share, stack in zip(problem.kit.shares, problem.charts, strict=True):
-        if stack is None:
-            stacks.append(_fewest(problem, share))
-        else:
-            stacks.append(tuple(place[face] for face in stack))
+    stacks = [
+        _fewest(problem, share) if stack is None else tuple(place[face] for face in stack)
+        for share, stack in zip(problem.kit.shares, problem.charts, strict=True)
+    ]
     # The chart may take more plates than any allowed stack.
     longest = max(problem.alphabet.longest, *map(len, stacks), 1)
     roomy = replace(problem, alphabet=Alphabet.of(problem.kit.kinds, longest))
     return priced(roomy, stacks, bound=plain_bound(problem))
+
+
+def by_rule(problem: Problem) -> Solution:
+    """A plan at once, by all the rules: at every attempt a stack of the fewest plates, heaviest plates first.
+
+    Raises :class:`Refusal` when comfort asks for balance, which cannot be judged without listing all orders.
+    """
+    if any(rule.by is ComfortBy.BALANCE for rule in problem.request.comfort):
+        because = "There are too many orders to find the best balanced; allow fewer extra plates."
+        raise bad_request("comfort", because)
+    stacks = {share: _fewest(problem, share) for share in problem.distinct}
+    return priced(problem, [stacks[share] for share in problem.kit.shares], bound=plain_bound(problem))
 
 
 def _fewest(problem: Problem, share: int) -> Kinds:

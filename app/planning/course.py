@@ -11,11 +11,12 @@ from numpy.typing import NDArray
 
 from app.planning.arrange import (
     Family,
-    comfortable_family,
+    comfortable_families,
     counts_of,
-    family,
+    families,
     inside_first,
     leading_thickness,
+    one_order,
     order_matters,
     rules_by_counts,
     sorted_digits,
@@ -32,19 +33,27 @@ from app.planning.watch import Watch
 def stack_course(problem: Problem, watch: Watch) -> Course:
     """The course over every allowed stack of every weight."""
     kit, request, alphabet = problem.kit, problem.request, problem.alphabet
-    families = [family(kit, request, alphabet, problem.vectors[share]) for share in problem.distinct]
+    watch.room(problem.how_many_stacks() * LISTED_BYTES)
+    vectors = [problem.vectors[share] for share in problem.distinct]
     start = (alphabet.write(start_row(problem)), np.array([len(kit.start)]))
-    return _course(problem, request.access, start, families, np.zeros(1, problem.prices.dtype), watch)
+    return _course(
+        problem,
+        request.access,
+        start,
+        families(kit, request, alphabet, vectors),
+        np.zeros(1, problem.prices.dtype),
+        watch,
+    )
 
 
 def sorted_course(problem: Problem, watch: Watch) -> Course:
     """The course over one stack for each count vector, under the request's own access: some chains only."""
     alphabet = problem.alphabet
     whole = count_course(problem, watch, bound=True)
-    families = [(whole.graph.codes[part.ends], whole.graph.length[part.ends]) for part in whole.graph.parts]
+    stacks = [(whole.graph.codes[part.ends], whole.graph.length[part.ends]) for part in whole.graph.parts]
     start = (alphabet.write(start_row(problem)), np.array([len(problem.kit.start)]))
     seed = np.zeros(1, problem.prices.dtype)
-    return _course(problem, problem.request.access, start, families[1:], seed, watch)
+    return _course(problem, problem.request.access, start, stacks[1:], seed, watch)
 
 
 def counts_are_enough(problem: Problem) -> bool:
@@ -73,17 +82,16 @@ def count_course(problem: Problem, watch: Watch, *, bound: bool = False) -> Cour
     kit, request, alphabet = problem.kit, problem.request, problem.alphabet
     inside = inside_first(kit, request)
     rules = rules_by_counts(request)[leading_thickness(request) :]
-    families = []
-    for share in problem.distinct:
-        codes = np.sort(alphabet.write(sorted_digits(alphabet, problem.vectors[share], inside)))
-        families.append(comfortable_family(kit, alphabet, codes, rules))
+    listed = one_order(kit, request, alphabet, [problem.vectors[share] for share in problem.distinct])
+    stacks = comfortable_families(kit, alphabet, listed, rules)
     left, seed = (problem.start, np.zeros(1, problem.prices.dtype)) if bound else start_left(problem)
     codes = alphabet.write(sorted_digits(alphabet, left, inside))
     order = np.argsort(codes)
     start = (codes[order], left.sum(axis=1)[order])
-    return _course(problem, Access.ANYWHERE, start, families, seed[order], watch)
+    return _course(problem, Access.ANYWHERE, start, stacks, seed[order], watch)
 
 
+LISTED_BYTES = 60  # of one stack while all are listed
 Bars = list[tuple[ComfortBy, int]]
 
 
@@ -112,23 +120,24 @@ def _course(
     problem: Problem,
     access: Access,
     start: Family,
-    families: Sequence[Family],
+    listed: Sequence[Family],
     seed: Numbers,
     watch: Watch,
 ) -> Course:
-    fees: list[Numbers] = [np.zeros(len(seed), problem.prices.dtype)]
-    for share, (codes, _) in zip(problem.distinct, families, strict=True):
-        fees.append(fee_of(problem, share, problem.alphabet.read(codes)))
-    graph = build_graph(problem.alphabet, access, [start, *families], watch)
-    return Course(graph, problem.attempts, tuple(fees), seed)
+    graph = build_graph(problem.alphabet, access, [start, *listed], watch)
+    rows = problem.alphabet.read(np.concatenate([codes for codes, _ in listed]))
+    shares = np.repeat(np.arange(len(listed)), [len(codes) for codes, _ in listed])
+    fees = fees_of(problem, np.array(problem.distinct)[shares], rows)
+    cuts = np.flatnonzero(np.diff(shares)) + 1
+    return Course(graph, problem.attempts, (np.zeros_like(seed), *np.split(fees, cuts)), seed)
 
 
-def fee_of(problem: Problem, share: int, rows: NDArray[Any]) -> Numbers:
-    """Threading and distance to the chart of rows of digits that make a share."""
-    fee = problem.nearness(share, counts_of(rows, problem.kit.kinds))
+def fees_of(problem: Problem, shares: NDArray[np.int64], rows: NDArray[Any]) -> Numbers:
+    """Threading and distance to the chart of rows of digits, each of which makes its share."""
+    fees = problem.nearness(shares, counts_of(rows, problem.kit.kinds))
     if problem.prices.thread:
-        fee = fee + misaligned(problem.kit, rows).astype(fee.dtype) * problem.prices.packed_thread()
-    return fee
+        fees = fees + misaligned(problem.kit, rows).astype(fees.dtype) * problem.prices.packed_thread()
+    return fees
 
 
 def start_row(problem: Problem) -> NDArray[np.int64]:

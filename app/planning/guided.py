@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from app.loading.equipment import Access
-from app.planning.course import comfort_bars, comfortable, fee_of, start_row
+from app.planning.course import comfort_bars, comfortable, fees_of, start_row
 from app.planning.orders import obeying
 from app.planning.prices import Numbers
 from app.planning.problem import Problem
@@ -183,7 +183,7 @@ class Guided:
         share = problem.kit.shares[attempt - 1]
         here = here.some(np.isin(here.nodes, part.ends))
         here = here.some(comfortable(problem, self.bars[share], problem.alphabet.read(here.codes)))
-        fee = fee_of(problem, share, problem.alphabet.read(here.codes))
+        fee = fees_of(problem, np.full(len(here), share), problem.alphabet.read(here.codes))
         spent = here.spent + (fee // problem.prices.fold if self.limit is not None else 0)
         paid = self._cut(Stacks(here.codes, here.nodes, here.price + fee, spent), self.to_go.after[attempt])
         return Stacks(paid.codes, paid.nodes, paid.price, np.zeros_like(paid.spent))

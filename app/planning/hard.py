@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from app.planning.course import count_course, fee_of
+from app.planning.course import count_course, fees_of
 from app.planning.distance import Distance
 from app.planning.guided import Guided, Stacks
 from app.planning.limits import Limits
@@ -131,8 +131,8 @@ class Hunt:
             change = price(choices, rows[-1])
             total = before.price + change
             if limit is not None:
-                share = problem.kit.shares[attempt - 1]
-                fee = int(fee_of(problem, share, rows[-1])[0]) // prices.fold
+                share = np.array([problem.kit.shares[attempt - 1]])
+                fee = int(fees_of(problem, share, rows[-1])[0]) // prices.fold
                 total = np.where(change // prices.fold + fee <= limit, total, prices.never)
             rows.append(choices[[int(np.argmin(total))]])
         return kinds(np.concatenate(rows[::-1]))

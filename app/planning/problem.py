@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 
 from app.loading.equipment import Stack
 from app.planning.answer import ChartFigures
-from app.planning.arrange import comfortable_vectors
+from app.planning.arrange import comfortable_vectors, how_many_orders
 from app.planning.checking import check_request
 from app.planning.compose import chart_figures, chart_stacks
 from app.planning.counts import Ints, count_vectors, one_vector
@@ -53,15 +53,19 @@ class Problem:
         place = {share: 1 + index for index, share in enumerate(self.distinct)}
         return (0, *(place[share] for share in self.kit.shares))
 
-    def nearness(self, share: int, counts: Ints) -> Numbers:
-        """How many plates each row of counts would have to swap to be the chart's: the last tie-break.
+    def nearness(self, shares: Ints, counts: Ints) -> Numbers:
+        """How many plates each row of counts would have to swap to be its share's chart: the last tie-break.
 
-        Plates are counted whatever their order, so that every engine can add it up.
+        Plates are counted whatever their order, so that every engine can add it up. Where the chart has no
+        stack, all are as near.
         """
-        chart = self.chart_counts.get(share)
-        if chart is None:
-            return np.zeros(len(counts), self.prices.dtype)
-        return np.asarray(np.abs(counts - chart).sum(axis=1).astype(self.prices.dtype))
+        distinct = np.array(self.distinct)
+        nothing = np.zeros(self.kit.kinds, np.int64)
+        charts = np.stack([self.chart_counts.get(share, nothing) for share in self.distinct])
+        known = np.array([share in self.chart_counts for share in self.distinct])
+        place = np.searchsorted(distinct, shares)
+        apart = np.abs(counts - charts[place]).sum(axis=1) * known[place]
+        return np.asarray(apart.astype(self.prices.dtype))
 
     def least_change(self, before: int, after: int) -> int:
         """What any change between two shares costs at least, in steps of the measure."""
@@ -70,6 +74,11 @@ class Problem:
         if self.request.measure is Measure.MASS:
             return int(abs(after - before) * self.kit.step // self.prices.worth)
         return 0
+
+    def how_many_stacks(self) -> int:
+        """How many stacks the plain sweep would list, over all different weights."""
+        order = self.request.order
+        return sum(how_many_orders(self.kit, order, rows) for rows in self.vectors.values())
 
     def limit(self) -> int | None:
         """The asked limit in whole steps of the measure; ``None`` when there is none to keep."""

@@ -56,6 +56,10 @@ class Alphabet:
         columns = [self.digit(codes, place) for place in range(self.longest)]
         return np.stack(columns, axis=1).astype(np.int8)
 
+    def lengths(self, codes: Codes) -> Places:
+        """How many plates every stack has."""
+        return np.asarray(np.count_nonzero(self.read(codes), axis=1))
+
     def without(self, codes: Codes, place: int) -> Codes:
         """The stacks that are left when the plate at this place is taken out."""
         shift = self.shift(place)
@@ -139,7 +143,7 @@ def build_graph(
         _part([np.searchsorted(known[n], codes[lengths == n]) for n in range(longest + 1)], edges, first)
         for codes, lengths in families
     )
-    ends = tuple(_in_order(known, first, codes, lengths) for codes, lengths in families)
+    ends = [_in_order(known, first, codes, lengths) for codes, lengths in families]
     return Graph(
         alphabet=alphabet,
         codes=np.concatenate(known),
@@ -168,8 +172,11 @@ def _part(own: list[Places], edges: list[Edges], first: Places) -> tuple[Level, 
     levels = []
     reached = np.zeros(0, np.int64)
     for length in range(len(own) - 1, -1, -1):
-        here = np.unique(np.concatenate([own[length], reached]))
         smaller, kinds = edges[length]
+        marked = np.zeros(len(smaller), np.bool_)
+        marked[own[length]] = True
+        marked[reached] = True
+        here = np.flatnonzero(marked)
         levels.append(Level(here + first[length], smaller[here], kinds[here]))
         reached = smaller[here].ravel() - first[length - 1] if length else reached
     return tuple(levels[::-1])

@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from app.planning.course import fee_of
+from app.planning.course import fees_of
 from app.planning.distance import Distance
 from app.planning.problem import Problem
 
@@ -37,8 +37,9 @@ def priced(problem: Problem, stacks: Sequence[Kinds], *, bound: int | None = Non
     prices = problem.prices
     rows = digits(problem, [problem.kit.start, *stacks])
     changes = Distance(problem.request.access, prices.off, prices.on)(rows[:-1], rows[1:])
-    fees = [fee_of(problem, share, rows[[at]])[0] for at, share in enumerate(problem.kit.shares, start=1)]
-    costs = [int(change + fee) for change, fee in zip(changes, fees, strict=True)]
+    if len(stacks):
+        changes = changes + fees_of(problem, np.array(problem.kit.shares, np.int64), rows[1:])
+    costs = [int(change) for change in changes]
     worst = max((cost // prices.fold for cost in costs), default=0)
     return Solution(tuple(stacks), sum(costs), worst, bound, kept_by(problem, worst))
 

@@ -6,9 +6,8 @@ from contextlib import suppress
 from dataclasses import replace
 
 from app.planning.answer import Bound, Plan, slowest, summed
-from app.planning.arrange import how_many_orders
 from app.planning.budget import Budget
-from app.planning.bychart import by_chart, plain_bound
+from app.planning.bychart import by_chart, by_rule, plain_bound
 from app.planning.compose import compose
 from app.planning.depart import Departure, aimed
 from app.planning.hard import Hunt
@@ -79,7 +78,7 @@ def _solve(problem: Problem, budget: Budget, watch: Watch) -> Solution:
     try:
         solution = _proved(problem, budget, watch)
     except (OutOfTime, TooLarge):
-        solution = by_chart(problem)
+        solution = by_rule(problem)
     return solution if problem.whole else replace(solution, bound=plain_bound(problem))
 
 
@@ -93,15 +92,9 @@ def _proved(problem: Problem, budget: Budget, watch: Watch) -> Solution:
             if solution.kept is not False:
                 return solution
     balanced = any(rule.by is ComfortBy.BALANCE for rule in problem.request.comfort)
-    if balanced or problem.request.order is Order.HEAVIEST_INSIDE or how_many_stacks(problem) <= FEW_STACKS:
+    if balanced or problem.request.order is Order.HEAVIEST_INSIDE or problem.how_many_stacks() <= FEW_STACKS:
         return by_sweep(problem, watch)
     return _hunted(problem, budget, watch)
-
-
-def how_many_stacks(problem: Problem) -> int:
-    """How many stacks the plain sweep would list, over all different weights."""
-    order = problem.request.order
-    return sum(how_many_orders(problem.kit, order, rows) for rows in problem.vectors.values())
 
 
 def _hunted(problem: Problem, budget: Budget, watch: Watch) -> Solution:
@@ -112,7 +105,6 @@ def _hunted(problem: Problem, budget: Budget, watch: Watch) -> Solution:
     try:
         best = hunt.best(best)
         if best.bound is not None:
-            watch.room(how_many_stacks(problem) * 400)
             best = by_sweep(problem, watch)
     except (OutOfTime, TooLarge):
         best = replace(best, bound=max(floor, best.bound or 0))

@@ -35,7 +35,9 @@ class Course:
 
     @cached_property
     def _rows(self) -> list[NDArray[np.int8]]:
-        return [self.graph.alphabet.read(self.graph.codes[part.ends]) for part in self.graph.parts]
+        ends = np.concatenate([part.ends for part in self.graph.parts])
+        rows = self.graph.alphabet.read(self.graph.codes[ends])
+        return np.split(rows, np.cumsum([len(part.ends) for part in self.graph.parts])[:-1])
 
 
 class Sweep:

@@ -53,6 +53,8 @@ def check_answer(request: PlanRequest, document: dict) -> tuple[Fraction, Fracti
     return sum(totals[measure], Fraction(0)), sum(totals[tie], Fraction(0))
 
 
-def checked(request: PlanRequest, plan) -> tuple[Fraction, Fraction]:
-    """The same from a plan."""
+def checked(request: PlanRequest, plan, *, rules: bool = False) -> tuple[Fraction, Fraction]:
+    """The same from a plan; with ``rules``, also that every stack is among all that are allowed (slow)."""
+    for change in plan.changes if rules else ():
+        assert change.stack in reference.all_stacks(request, change.target)
     return check_answer(request, answer_document(plan))

@@ -5,7 +5,7 @@ from hypothesis import given
 
 from app.planning import Access, Aim, Order, PlanRequest, Refusal, answer_document, plan
 from tests.planning import reference
-from tests.planning.checker import check_answer
+from tests.planning.checker import check_answer, checked
 from tests.planning.strategies import a_fifth, requests
 
 
@@ -22,6 +22,7 @@ def agree(request: PlanRequest) -> None:
     total, slowest, kept = expected
     assert check_answer(request, document) == total
     assert document["proof"] == "optimal"
+    checked(request, found, rules=True)
     assert found.limit_kept is kept
     if request.aim is Aim.WORST or kept is False:
         names = {"plates": "plates", "mass": "mass", "time": "time_s"}
