@@ -151,9 +151,12 @@ class Hall:
         one = self.attempt(name, number, lift)
         return Seen(one.id, one.version)
 
-    def declare(self, name: str, number: int, weight: str, lift: str = SQUAT, who: str = WANDA) -> str:
+    def declare(
+        self, name: str, number: int, weight: str, lift: str = SQUAT, who: str = WANDA, reason: str = ""
+    ) -> str:
         """Wanda hands in a weight."""
-        return attempts.declare(self.desk, self.platform_id, self.seen(name, number, lift), weight, who=who)
+        seen = self.seen(name, number, lift)
+        return attempts.declare(self.desk, self.platform_id, seen, weight, reason, who=who)
 
     def judge(self, name: str, number: int, result: Result, lift: str = SQUAT, who: str = WANDA) -> str:
         """Wanda enters a result."""

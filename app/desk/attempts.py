@@ -2,85 +2,108 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from fractions import Fraction
 
 from app.desk.entry import Desk, Work, platform_entry
-from app.desk.errors import NotAllowedNow, SomebodyWasFirst
+from app.desk.errors import AgainstTheRules, NotAllowedNow
+from app.desk.subject import Seen, Subject, at_words, find_subject, moment_of, stamp
 from app.loading.mass import show_mass
-from app.meet.declare import Refused, decide, read_weight, sentence
-from app.meet.model import RESULT_WORDS, Attempt, Lifter, Result, attempt_name
-from app.meet.order import turns_of
+from app.meet.check_declaration import check_declaration
+from app.meet.declare import Refused, read_weight, sentence
+from app.meet.model import RESULT_WORDS, Result
+from app.meet.moment import Breach
 from app.meet.platform import Condition, lifted, overtaken, up_next
-from app.store.picture import Picture, get, store_bar
-from app.store.tables import AttemptRow
+from app.meet.ruled_order import ruled_turns
+from app.meet.rules import Default
+from app.store.picture import store_bar
+
+__all__ = ["Seen", "check", "declare", "judge"]
+
+RECORD_MARK = "r"  # typed after a weight: 142.5r is a record attempt
 
 
-@dataclass(frozen=True, slots=True)
-class Seen:
-    """An attempt as the person saw it who now enters something: by its id and version."""
+def declare(desk: Desk, platform_id: int, seen: Seen, text: str, reason: str = "", *, who: str) -> str:
+    """Hand in a weight; empty text takes the rule's default, an ``r`` behind it marks a record attempt.
 
-    attempt_id: int
-    version: int
-
-
-@dataclass(frozen=True, slots=True)
-class Subject:
-    """The attempt an entry is about, with its surroundings."""
-
-    row: AttemptRow
-    now: Picture
-    attempt: Attempt
-    lifter: Lifter
-    earlier: tuple[Attempt, ...]
-
-    @property
-    def name(self) -> str:
-        """``Mara Lindvik: Squat, 2nd``."""
-        lift = self.now.programme(self.attempt.lift_id).lift(self.attempt.lift_id)
-        return f"{self.lifter.name}: {attempt_name(lift.name, self.attempt.number)}"
-
-
-def declare(desk: Desk, platform_id: int, seen: Seen, text: str, *, who: str) -> str:
-    """Hand in a weight; empty text takes the rule's default. Returns what was entered, in words.
-
-    Declaring the same weight again changes nothing. A weight that another person entered since the page
-    was made is not overwritten: :class:`SomebodyWasFirst` tells what it is.
+    Returns what was entered, in words. Declaring the same again changes nothing. A weight against the rules of
+    the meet is refused with what would be right; where the table may decide, a ``reason`` overrides, and the
+    journal keeps it. A weight that another person entered since the page was made is not overwritten.
     """
     with platform_entry(desk, platform_id, who) as work:
-        subject = _subject(work, seen)
-        weight = _read(subject, text)
-        if subject.attempt.weight == weight:
+        subject = find_subject(work, seen)
+        weight, record = _read(subject, text)
+        attempt = subject.attempt
+        if (attempt.weight, attempt.record) == (weight, record) and attempt.result is Result.OPEN:
             return f"{subject.name} stays at {show_mass(weight)}."
-        was = "" if subject.attempt.weight is None else f" (was {show_mass(subject.attempt.weight)})"
-        subject.row.weight = weight
-        _stamp(subject.row, work)
-        work.what = f"{subject.name} declared at {show_mass(weight)}{was}"
+        overridden = _judged(_breaches(work, subject, weight, record), " ".join(reason.split()))
+        was = "" if attempt.weight is None else f" (was {show_mass(attempt.weight)})"
+        subject.row.changes += attempt.weight is not None and attempt.weight != weight
+        subject.row.weight, subject.row.record = weight, record
+        stamp(subject.row, work)
+        marked = ", record attempt" if record else ""
+        work.what = f"{subject.name} declared at {show_mass(weight)}{was}{marked}{overridden}"
         return f"{work.what}."
 
 
-def _read(subject: Subject, text: str) -> Fraction:
-    step = subject.now.programme(subject.attempt.lift_id).lift(subject.attempt.lift_id).step
-    if text.strip():
-        read = read_weight(text)
+def check(desk: Desk, platform_id: int, seen: Seen, text: str, *, who: str) -> list[Breach]:
+    """What would be said to this weight, without entering it. Raises what cannot even be read."""
+    with platform_entry(desk, platform_id, who) as work:
+        subject = find_subject(work, seen)
+        weight, record = _read(subject, text)
+        return _breaches(work, subject, weight, record)
+
+
+def _breaches(work: Work, subject: Subject, weight: Fraction, record: bool) -> list[Breach]:  # noqa: FBT001 - with its weight
+    return check_declaration(
+        subject.rules,
+        weight,
+        subject.attempt,
+        subject.others,
+        moment_of(work, subject),
+        subject.now.equipment(subject.attempt.lift_id),
+        subject.now.unit,
+        record=record,
+    )
+
+
+def _judged(breaches: list[Breach], reason: str) -> str:
+    """Refuse, or say in words what the table has overridden and why."""
+    final = [breach for breach in breaches if not breach.overridable]
+    if final:
+        raise NotAllowedNow(str(final[0]))
+    if not breaches:
+        return ""
+    if not reason:
+        raise AgainstTheRules(
+            " ".join(map(str, breaches)), late=[b.key for b in breaches] == ["seconds_to_hand_in"]
+        )
+    return f"; against the rule ({' '.join(breach.because for breach in breaches)}), because: {reason[:200]}"
+
+
+def _read(subject: Subject, text: str) -> tuple[Fraction, bool]:
+    """The typed weight and whether it is marked as a record; empty text gives what stands or the default."""
+    text = text.strip()
+    record = text[-1:].lower() == RECORD_MARK
+    plain = text[:-1] if record else text
+    if plain:
+        read = read_weight(plain)
         if isinstance(read, Refused):
             raise NotAllowedNow(sentence(read))
-        weight = read.weight
-    elif subject.attempt.weight is not None:
-        return subject.attempt.weight
-    else:
-        weight = _default(subject, step)
-    equipment = subject.now.equipment(subject.attempt.lift_id)
-    decision = decide(weight, subject.attempt, subject.earlier, step, equipment, subject.now.unit)
-    if isinstance(decision, Refused):
-        raise NotAllowedNow(sentence(decision))
-    return decision.weight
+        return read.weight, record
+    if subject.attempt.weight is not None:
+        return subject.attempt.weight, record or subject.attempt.record
+    return _default(subject), record
 
 
-def _default(subject: Subject, step: Fraction) -> Fraction:
+def _default(subject: Subject) -> Fraction:
     """The weight that the order shows for this attempt while nobody has handed one in."""
+    if subject.rules.default is Default.FORFEITED:
+        raise NotAllowedNow(
+            f"{subject.name}: type a weight. Not handed in, the attempt is forfeited: pass it then."
+        )
     asked = replace(subject.attempt, result=Result.OPEN)
-    turns = turns_of(subject.lifter, (*subject.earlier, asked), step)
+    turns = ruled_turns(subject.lifter, (*subject.others, asked), subject.rules)
     weight = next((turn.weight for turn in turns if turn.attempt.id == asked.id), None)
     if weight is None:
         raise NotAllowedNow(f"{subject.name}: type a weight. An opener has no default.")
@@ -94,39 +117,35 @@ def judge(desk: Desk, platform_id: int, seen: Seen, result: Result, *, who: str)
     and gives them the next change.
     """
     with platform_entry(desk, platform_id, who) as work:
-        subject = _subject(work, seen)
+        subject = find_subject(work, seen)
         if subject.attempt.result is result:
             return f"{subject.name} stays a {RESULT_WORDS[result]}."
         if result is Result.OPEN:
             raise NotAllowedNow("To take a result back, use undo.")
         if subject.attempt.result is Result.OPEN:
             _leave_platform(work, subject, result)
-            work.what = f"{subject.name}: {RESULT_WORDS[result]}{_at(subject.attempt)}"
+            work.what = f"{subject.name}: {RESULT_WORDS[result]}{at_words(subject.attempt)}"
         else:
             if subject.attempt.weight is None:
                 raise NotAllowedNow(f"{subject.name} was never handed in, so nothing was lifted. Use undo.")
             was = RESULT_WORDS[subject.attempt.result]
             work.what = f"{subject.name} corrected to {RESULT_WORDS[result]} (was {was})"
+        if result is not Result.PASSED:
+            subject.row.lifted_at = subject.row.lifted_at or work.now
         subject.row.result = result.value
-        _stamp(subject.row, work)
+        stamp(subject.row, work)
         return f"{work.what}."
-
-
-def _at(attempt: Attempt) -> str:
-    return "" if attempt.weight is None else f" at {show_mass(attempt.weight)}"
 
 
 def _leave_platform(work: Work, subject: Subject, result: Result) -> None:
     """The attempt ends: is it allowed, and what does it say about the bar?"""
-    now, bar = subject.now, subject.now.bar
-    order = now.programme(subject.attempt.lift_id).order(subject.lifter.flight_id, subject.attempt.lift_id)
-    in_hand = bar.hand is not None and bar.hand.attempt_id == subject.attempt.id
+    bar = subject.now.bar
+    order = subject.programme.order(subject.lifter.flight_id, subject.attempt.lift_id)
     if result is Result.PASSED:
-        if in_hand and bar.condition is Condition.LIFTING:
+        if subject.in_hand and bar.condition is Condition.LIFTING:
             store_bar(work.platform, lifted(bar))
         return
-    here = (now.flight_id, now.lift_id) == (subject.lifter.flight_id, subject.attempt.lift_id)
-    up = up_next(bar, order) if here else None
+    up = up_next(bar, order) if subject.here else None
     if bar.condition is Condition.HOLD:
         raise NotAllowedNow("The platform is on hold. End the hold first.")
     if up is None or up.attempt.id != subject.attempt.id:
@@ -134,33 +153,8 @@ def _leave_platform(work: Work, subject: Subject, result: Result) -> None:
         raise NotAllowedNow(f"{subject.lifter.name} is not up, so there is no lift to judge.{is_up}")
     if up.assumed:
         raise NotAllowedNow(f"{subject.name} has not been handed in yet. Declare the weight first.")
-    if not in_hand or overtaken(bar, order):
+    if not subject.in_hand or overtaken(bar, order):
         raise NotAllowedNow(
             "The crew has not said what is on the bar. Answer that first, then enter the result."
         )
     store_bar(work.platform, lifted(bar))
-
-
-def _subject(work: Work, seen: Seen) -> Subject:
-    row = get(work.session, AttemptRow, seen.attempt_id, "attempt")
-    now = work.picture()
-    programmes = [p for _, _, p in now.sessions if any(a.id == seen.attempt_id for a in p.attempts)]
-    if not programmes:
-        raise NotAllowedNow("This attempt belongs to another platform.")
-    programme = programmes[0]
-    attempt = next(one for one in programme.attempts if one.id == seen.attempt_id)
-    lifter = next(one for one in programme.lifters if one.id == attempt.lifter_id)
-    theirs = programme.of_lift(attempt.lift_id)[lifter.id]
-    subject = Subject(row, now, attempt, lifter, tuple(one for one in theirs if one.number < attempt.number))
-    if row.version != seen.version:
-        raise SomebodyWasFirst(
-            f"{subject.name} was changed by {row.entered_by or 'somebody'} while you were typing: it is now "
-            f"{RESULT_WORDS[attempt.result]}{_at(attempt)}. Nothing of yours was entered. Look, and enter again."
-        )
-    return subject
-
-
-def _stamp(row: AttemptRow, work: Work) -> None:
-    row.version += 1
-    row.entered_by = work.who
-    row.entered_at = work.now

@@ -86,6 +86,8 @@ def _move(
             raise NotAllowedNow(str(refused)) from refused
         work.what = f"{now.platform}: {words}{_weight(now.bar)}"
         store_bar(work.platform, bar)
+        if bar.condition is Condition.LIFTING and now.bar.condition is not Condition.LIFTING:
+            work.platform.loaded_at = work.now
 
 
 def _weight(bar: Bar) -> str:

@@ -13,6 +13,14 @@ class NotAllowedNow(DeskError):
     """A rule of the meet, or the state of the platform, stands against it."""
 
 
+class AgainstTheRules(NotAllowedNow):
+    """A rule that the table may override, with a reason. ``late``: only the time to hand in has run out."""
+
+    def __init__(self, sentence: str, *, late: bool) -> None:
+        super().__init__(sentence)
+        self.late = late
+
+
 class SomebodyWasFirst(DeskError):
     """Two people entered the same thing; the second is told what the first wrote."""
 

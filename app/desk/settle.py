@@ -41,6 +41,8 @@ def settle(session: Session, platform_id: int, budget: Budget) -> None:
     else:
         row.plan = stored_plan(made, turns)
     store_bar(row, bar)
+    if bar.condition is not Condition.LIFTING:
+        row.loaded_at = None
 
 
 def _own_bar(now: Picture, row: PlatformRow) -> Bar:

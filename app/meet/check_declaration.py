@@ -120,6 +120,11 @@ def _rise(case: _Case) -> Iterator[Breach]:
     if waiting is not None and case.weight < waiting:
         because = f"{case.say(case.weight)} is below {case.say(waiting)}, which this lifter has yet to lift."
         yield Breach("least_rise", because, _nearest(case))
+    later = [one for one in case.others if one.number > case.attempt.number and one.weight is not None]
+    lighter = min((one.weight for one in later if one.weight is not None), default=None)
+    if lighter is not None and lighter < case.weight:
+        because = f"A later attempt of this lifter has been handed in already, lighter: {case.say(lighter)}."
+        yield Breach("least_rise", because, "Change that one too.")
 
 
 def _fourth(case: _Case) -> Breach:

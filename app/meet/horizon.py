@@ -8,11 +8,17 @@ Without that last look a plan leaves a long stack for the next flight to strip (
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from fractions import Fraction
+from functools import partial
 
-from app.meet.model import Attempt, Flight, Lift, Lifter
-from app.meet.order import Turn, flight_order
+from app.meet.misload import Retake
+from app.meet.model import Attempt, Flight, Lift, Lifter, Result
+from app.meet.order import Turn
+from app.meet.rule_presets import ROUNDS_BAR
+from app.meet.rule_reading import preset_rules
+from app.meet.ruled_order import ruled_order
+from app.meet.rules import RetakePlace, Rules
 
 
 @dataclass(frozen=True, slots=True)
@@ -23,6 +29,7 @@ class Programme:
     flights: tuple[Flight, ...]
     lifters: tuple[Lifter, ...]
     attempts: tuple[Attempt, ...]
+    rules: Rules = field(default_factory=partial(preset_rules, ROUNDS_BAR.key))
 
     def of_flight(self, flight_id: int) -> tuple[Lifter, ...]:
         """The flight's lifters by lot number."""
@@ -46,10 +53,23 @@ class Programme:
         """The flight with this id."""
         return next(one for one in self.flights if one.id == flight_id)
 
+    def rules_of(self, lift_id: int) -> Rules:
+        """The session's rules in the step of this lift."""
+        return self.rules.for_step(self.lift(lift_id).step)
+
     def order(self, flight_id: int, lift_id: int) -> tuple[Turn, ...]:
-        """Everything the flight still has to lift in this lift, in lifting order."""
-        lift = self.lift(lift_id)
-        return flight_order(self.of_flight(flight_id), self.of_lift(lift_id), lift.step)
+        """Everything the flight still has to lift in this lift, in lifting order by the session's rules."""
+        here = [lifter for lifter in self.of_flight(flight_id) if not lifter.withdrawn]
+        attempts = self.of_lift(lift_id)
+        done = [(a.lifted_at, a.id) for a in self.attempts if a.lift_id == lift_id and a.lifted_at is not None]
+        granted = [a for a in self.attempts if a.lift_id == lift_id and a.retake and a.result is Result.OPEN]
+        return ruled_order(
+            here,
+            attempts,
+            self.rules_of(lift_id),
+            lifted=[attempt_id for _, attempt_id in sorted(done)],
+            retakes=[Retake(a.id, RetakePlace(a.retake)) for a in sorted(granted, key=lambda a: a.id)],
+        )
 
 
 def after(programme: Programme, flight_id: int, lift_id: int) -> tuple[int, int] | None:

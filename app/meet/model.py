@@ -6,6 +6,7 @@ Masses are exact fractions of the meet's own unit (kg or lb), never floats.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from datetime import datetime
 from enum import StrEnum
 from fractions import Fraction
 
@@ -39,11 +40,16 @@ class Lifter:
     lot: int
     flight_id: int
     body_weight: Fraction | None
+    withdrawn: bool = False
 
 
 @dataclass(frozen=True, slots=True)
 class Attempt:
-    """One try: a lifter, a lift, a number; the weight is None until somebody hands it in."""
+    """One try: a lifter, a lift, a number; the weight is None until somebody hands it in.
+
+    ``changes`` counts how often a handed-in weight was replaced. ``record``: the lifter asks for a record.
+    ``retake`` says where a retake that was granted goes; "" for none. ``lifted_at`` is aware UTC.
+    """
 
     id: int
     lifter_id: int
@@ -53,6 +59,10 @@ class Attempt:
     result: Result
     version: int
     entered_by: str = ""
+    changes: int = 0
+    record: bool = False
+    retake: str = ""
+    lifted_at: datetime | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -14,7 +14,7 @@ from app.loading.chart import loadable
 from app.loading.equipment import Equipment, Plate
 from app.loading.mass import show_mass
 from app.meet.silence import step_up
-from app.planning import Measure, PlanRequest, plan
+from app.planning import Budget, Measure, PlanRequest, plan
 
 HEADROOM = Fraction(115, 100)
 MOST_BORROWED = 8  # pairs of one face; who needs more needs another set
@@ -45,12 +45,16 @@ class StockCheck:
 
 @dataclass(frozen=True, slots=True)
 class Borrowed:
-    """One pair (one piece for a belt) and the mass it saves the crew over the openers, all ends together."""
+    """One pair (one piece for a belt) and the mass it saves the crew over the openers, all ends together.
+
+    ``proved``: both plans that were compared are the best there are, so the saving is exact.
+    """
 
     face: Fraction
     pieces: int
     saves: Fraction
     of: Fraction
+    proved: bool = True
 
 
 def span(openers: Iterable[Fraction], step: Fraction, headroom: Fraction = HEADROOM) -> tuple[Fraction, ...]:
@@ -128,33 +132,38 @@ def _most_useful(
 
 
 def best_to_borrow(
-    request: PlanRequest, flights: Sequence[Sequence[Fraction]], lendable: Sequence[Plate] = ()
+    request: PlanRequest,
+    flights: Sequence[Sequence[Fraction]],
+    lendable: Sequence[Plate] = (),
+    budget: Budget | None = None,
 ) -> Borrowed | None:
     """The single pair (piece for a belt) that saves most mass over a plan of all flights' openers.
 
     ``request`` carries the equipment and the loading rules of the lift; its targets and measure are not
     looked at. Each flight is lifted lightest first. Openers that cannot be made are left out on both sides
-    of the comparison. None when no plate saves anything. Plans once for every kind of plate.
+    of the comparison. None when no plate saves anything. Plans once for every kind of plate, each within the
+    budget.
     """
     equipment = request.equipment
     ends = equipment.implement.ends
     targets = tuple(weight for flight in flights for weight in sorted(flight) if loadable(equipment, weight))
-    now = _mass_handled(request, equipment, targets)
-    savings = [
-        Borrowed(
-            kind.face, ends, now - _mass_handled(request, with_more(equipment, kind, ends), targets), now
-        )
-        for kind in _kinds(equipment, lendable)
-    ]
+    now, sure = _mass_handled(request, equipment, targets, budget)
+    savings = []
+    for kind in _kinds(equipment, lendable):
+        mass, proved = _mass_handled(request, with_more(equipment, kind, ends), targets, budget)
+        savings.append(Borrowed(kind.face, ends, now - mass, now, proved=sure and proved))
     best = max(savings, key=lambda one: (one.saves, -one.face), default=None)
     return best if best is not None and best.saves > 0 else None
 
 
-def _mass_handled(request: PlanRequest, equipment: Equipment, targets: tuple[Fraction, ...]) -> Fraction:
+def _mass_handled(
+    request: PlanRequest, equipment: Equipment, targets: tuple[Fraction, ...], budget: Budget | None
+) -> tuple[Fraction, bool]:
     question = replace(
         request, equipment=equipment, targets=targets, measure=Measure.MASS, limit=None, start=()
     )
-    return plan(question).total.mass * equipment.implement.ends
+    made = plan(question, budget or Budget())
+    return made.total.mass * equipment.implement.ends, made.proof == "optimal"
 
 
 def say_missing(missing: Sequence[Fraction], unit: str) -> tuple[str, ...]:
@@ -192,11 +201,13 @@ def sentences(check: StockCheck, unit: str, ends: int) -> tuple[str, ...]:
     ]
     for at, one in enumerate(check.shortages):
         said.append(
-            f"{'Then also' if at else 'Short by'} {_pieces(one, ends)}, which makes {one.makes} of them."
+            f"{'Then also' if at else 'Short by'} {say_pieces(one.face, one.pieces, ends)}, "
+            f"which makes {one.makes} of them."
         )
     if check.beyond:
         said.append(
-            f"No borrowed plates make {_list(check.beyond, unit)}: under the bar, or the sleeve is full."
+            f"No borrowed plates make {_list(check.beyond, unit)}: "
+            "lighter than the empty bar, or more than there is room for."
         )
     return tuple(said)
 
@@ -205,9 +216,10 @@ def _list(weights: Sequence[Fraction], unit: str) -> str:
     return "; ".join(say_missing(weights, unit))
 
 
-def _pieces(one: Shortage, ends: int) -> str:
-    face = show_mass(one.face)
-    if ends == 2 and one.pieces % 2 == 0:
-        pairs = one.pieces // 2
-        return f"{pairs} pair{'s' if pairs > 1 else ''} of {face}s"
-    return f"{one.pieces} of the {face}s" if one.pieces > 1 else f"1 of the {face}s"
+def say_pieces(face: Fraction, pieces: int, ends: int) -> str:
+    """``2 pairs of 5s`` for a bar, ``1 of the 1.25s`` where it is no pair."""
+    name = show_mass(face)
+    if ends == 2 and pieces % 2 == 0:
+        pairs = pieces // 2
+        return f"{pairs} pair{'s' if pairs > 1 else ''} of {name}s"
+    return f"{pieces} of the {name}s"

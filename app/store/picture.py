@@ -148,7 +148,7 @@ def picture(session: Session, platform_id: int) -> Picture:
         stock=stock(session, platform_id),
         tools=tools(session, platform_id),
         sessions=tuple(
-            (key(row), row.name, _programme(row, lifts, flights, lifters, attempts)) for row in sessions
+            (key(row), row.name, _programme(row, lifts, flights, lifters, attempts, meet.unit)) for row in sessions
         ),
         rules={key(row): to_rules(row, meet.unit) for row in sessions},
         loading={key(row): row.loading or {} for row in lifts},
@@ -162,6 +162,7 @@ def _programme(
     flights: Sequence[FlightRow],
     lifters: Sequence[LifterRow],
     attempts: Sequence[AttemptRow],
+    unit: str,
 ) -> Programme:
     own_lifts = [one for one in lifts if one.session_id == row.id]
     own_flights = [one for one in flights if one.session_id == row.id]
@@ -175,6 +176,7 @@ def _programme(
         attempts=tuple(
             to_attempt(one) for one in attempts if one.lift_id in lift_ids and one.lifter_id in lifter_ids
         ),
+        rules=to_rules(row, unit),
     )
 
 
@@ -237,20 +239,24 @@ def to_flight(row: FlightRow) -> Flight:
 
 def to_lifter(row: LifterRow) -> Lifter:
     """The lifter as the rules see them."""
-    return Lifter(key(row), row.name, row.lot, row.flight_id, row.body_weight)
+    return Lifter(key(row), row.name, row.lot, row.flight_id, row.body_weight, row.withdrawn)
 
 
 def to_attempt(row: AttemptRow) -> Attempt:
     """The attempt as the rules see it."""
     return Attempt(
-        key(row),
-        row.lifter_id,
-        row.lift_id,
-        row.number,
-        row.weight,
-        Result(row.result),
-        row.version,
-        row.entered_by,
+        id=key(row),
+        lifter_id=row.lifter_id,
+        lift_id=row.lift_id,
+        number=row.number,
+        weight=row.weight,
+        result=Result(row.result),
+        version=row.version,
+        entered_by=row.entered_by,
+        changes=row.changes,
+        record=row.record,
+        retake=row.retake or "",
+        lifted_at=row.lifted_at,
     )
 
 

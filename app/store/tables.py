@@ -69,6 +69,7 @@ class MeetRow(Row, table=True):
     name: str
     unit: str = "kg"
     created_at: datetime
+    owned: dict[str, int] | None = _json()  # pieces the meet owns, by face; null = not counted
 
 
 class PlatformRow(Row, table=True):
@@ -83,6 +84,7 @@ class PlatformRow(Row, table=True):
     flight_id: int | None = Field(default=None)
     lift_id: int | None = Field(default=None)
     condition: str = "idle"
+    loaded_at: datetime | None = None
     implement_id: int | None = Field(default=None)
     bar: list[str] | None = _json()  # faces a side, inside to outside; null = nobody knows
     hand: dict[str, Any] | None = _json()
@@ -96,6 +98,7 @@ class ImplementRow(Row, table=True):
     platform_id: int = _key("platform")
     name: str
     kind: str  # "bar" or "belt"
+    pieces: int = 1  # how many of it are in circulation
     mass: Fraction = _exact()
     usable_mm: Fraction | None = _exact(nullable=True)
     collar_mass: Fraction | None = _exact(nullable=True)
@@ -145,6 +148,8 @@ class FlightRow(Row, table=True):
     session_id: int = _key("session")
     name: str
     position: int = 0
+    owner: str = ""  # the official who enters for it; others see, and take over explicitly
+    starts_at: datetime | None = None
 
 
 class LifterRow(Row, table=True):
@@ -157,6 +162,7 @@ class LifterRow(Row, table=True):
     name: str
     lot: int
     body_weight: Fraction | None = _exact(nullable=True)
+    withdrawn: bool = False
 
 
 class RackRow(Row, table=True):
@@ -182,6 +188,10 @@ class AttemptRow(Row, table=True):
     version: int = 0
     entered_by: str = ""
     entered_at: datetime | None = None
+    changes: int = 0  # how often one handed-in weight was replaced by another
+    record: bool = False
+    retake: str | None = None  # where a retake that was granted goes; null = no retake
+    lifted_at: datetime | None = None
 
 
 class JournalRow(Row, table=True):

@@ -2,14 +2,14 @@
 
 Revision ID: f30a49b83a03
 Revises:
-Create Date: 2026-12-01 08:35:27.634417
+Create Date: 2026-12-01 09:24:29.114488
 """
 
-from alembic import op
 import sqlalchemy as sa
 import sqlmodel
-import app.store.tables
+from alembic import op
 
+import app.store.tables
 
 revision = "f30a49b83a03"
 down_revision = None
@@ -25,6 +25,7 @@ def upgrade() -> None:
         sa.Column("name", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("unit", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("created_at", sqlmodel.sql.sqltypes.UTCDateTime(), nullable=False),
+        sa.Column("owned", sa.JSON(none_as_null=True), nullable=True),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_meet")),
         sqlite_autoincrement=True,
     )
@@ -38,6 +39,7 @@ def upgrade() -> None:
         sa.Column("flight_id", sa.Integer(), nullable=True),
         sa.Column("lift_id", sa.Integer(), nullable=True),
         sa.Column("condition", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
+        sa.Column("loaded_at", sqlmodel.sql.sqltypes.UTCDateTime(), nullable=True),
         sa.Column("implement_id", sa.Integer(), nullable=True),
         sa.Column("bar", sa.JSON(none_as_null=True), nullable=True),
         sa.Column("hand", sa.JSON(none_as_null=True), nullable=True),
@@ -55,6 +57,7 @@ def upgrade() -> None:
         sa.Column("platform_id", sa.Integer(), nullable=False),
         sa.Column("name", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("kind", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
+        sa.Column("pieces", sa.Integer(), nullable=False),
         sa.Column("mass", app.store.tables.Exact(length=32), nullable=False),
         sa.Column("usable_mm", app.store.tables.Exact(length=32), nullable=True),
         sa.Column("collar_mass", app.store.tables.Exact(length=32), nullable=True),
@@ -129,6 +132,8 @@ def upgrade() -> None:
         sa.Column("session_id", sa.Integer(), nullable=False),
         sa.Column("name", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("position", sa.Integer(), nullable=False),
+        sa.Column("owner", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
+        sa.Column("starts_at", sqlmodel.sql.sqltypes.UTCDateTime(), nullable=True),
         sa.ForeignKeyConstraint(["session_id"], ["session.id"], name=op.f("fk_flight_session_id_session")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_flight")),
         sa.UniqueConstraint("session_id", "name", name=op.f("uq_flight_session_id")),
@@ -165,6 +170,7 @@ def upgrade() -> None:
         sa.Column("name", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("lot", sa.Integer(), nullable=False),
         sa.Column("body_weight", app.store.tables.Exact(length=32), nullable=True),
+        sa.Column("withdrawn", sa.Boolean(), nullable=False),
         sa.ForeignKeyConstraint(["flight_id"], ["flight.id"], name=op.f("fk_lifter_flight_id_flight")),
         sa.ForeignKeyConstraint(["meet_id"], ["meet.id"], name=op.f("fk_lifter_meet_id_meet")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_lifter")),
@@ -186,6 +192,10 @@ def upgrade() -> None:
         sa.Column("version", sa.Integer(), nullable=False),
         sa.Column("entered_by", sqlmodel.sql.sqltypes.AutoString(), nullable=False),
         sa.Column("entered_at", sqlmodel.sql.sqltypes.UTCDateTime(), nullable=True),
+        sa.Column("changes", sa.Integer(), nullable=False),
+        sa.Column("record", sa.Boolean(), nullable=False),
+        sa.Column("retake", sqlmodel.sql.sqltypes.AutoString(), nullable=True),
+        sa.Column("lifted_at", sqlmodel.sql.sqltypes.UTCDateTime(), nullable=True),
         sa.ForeignKeyConstraint(["lift_id"], ["lift.id"], name=op.f("fk_attempt_lift_id_lift")),
         sa.ForeignKeyConstraint(["lifter_id"], ["lifter.id"], name=op.f("fk_attempt_lifter_id_lifter")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_attempt")),

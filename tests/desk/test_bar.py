@@ -55,7 +55,7 @@ def hand_of(hall: Hall) -> Hand:
 
 def test_a_loaded_bar_is_as_shown_and_hands_are_off(hall: Hall) -> None:
     hand = hand_of(hall)
-    with changes(hall, {PLATFORM: {"condition", "bar"}}):
+    with changes(hall, {PLATFORM: {"condition", "bar", "loaded_at"}}):
         hall.load()
     assert hall.picture().bar == Bar(Condition.LIFTING, FIRST, hand)
 
@@ -95,7 +95,7 @@ def test_loaded_on_a_screen_that_had_not_heard_of_the_new_weight_is_believed(hal
 def test_taking_loaded_back_gives_the_crew_the_same_change_again(hall: Hall) -> None:
     before = hall.picture().bar
     hall.load()
-    with changes(hall, {PLATFORM: {"condition", "bar"}}):
+    with changes(hall, {PLATFORM: {"condition", "bar", "loaded_at"}}):
         bar_is_not_loaded(hall.desk, hall.platform_id, who=LUC)
     assert hall.picture().bar == before
 

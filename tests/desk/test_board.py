@@ -73,7 +73,7 @@ def test_somebody_lighter_makes_the_crew_say_first_what_is_on_the_bar(hall: Hall
 def test_a_weight_changed_and_changed_back_leaves_the_crew_in_peace(hall: Hall) -> None:
     bar = hall.picture().bar
     hall.declare(ADA, 1, "105")
-    hall.declare(ADA, 1, "100")
+    hall.declare(ADA, 1, "100", reason="the coach has thought again")
     assert (hall.picture().bar, hall.board().ask) == (bar, False)
 
 
@@ -187,7 +187,7 @@ def test_the_plan_knows_what_the_next_flight_opens_with(hall: Hall) -> None:
     for name, number in ((ADA, 1), (CLEO, 1), (ADA, 2), (CLEO, 2), (ADA, 3), (CLEO, 3), (BO, 1), (BO, 2)):
         hall.judge(name, number, Result.PASSED)
     hall.declare(BO, 3, "150")
-    hall.declare("Etta Frost", 1, "150")
+    hall.declare("Etta Frost", 1, "150", reason="the jury allows it")
     bar_carries(hall.desk, hall.platform_id, "before", who=LUC)
     last = hand_of(hall).stack
     plan = hall.picture().plan

@@ -6,7 +6,7 @@ import pytest
 
 from app.desk import attempts
 from app.desk.attempts import Seen
-from app.desk.errors import NotAllowedNow, SomebodyWasFirst
+from app.desk.errors import AgainstTheRules, NotAllowedNow, SomebodyWasFirst
 from app.desk.roster import import_roster
 from app.meet.model import Result
 from app.store.picture import NotFound
@@ -32,7 +32,15 @@ def test_a_declared_weight_is_entered_and_nothing_else_is_touched(hall: Hall) ->
 
 def test_a_changed_weight_says_what_it_was(hall: Hall) -> None:
     hall.declare(BO, 2, "117.5")
-    assert hall.declare(BO, 2, "120") == "Bo Carver: Squat, 2nd declared at 120 (was 117.5)."
+    with pytest.raises(AgainstTheRules, match="Only the third attempt of the last lift may be changed"):
+        hall.declare(BO, 2, "120")
+    reason = "the coach misspoke"
+    said = hall.declare(BO, 2, "120", reason=reason)
+    assert said == (
+        "Bo Carver: Squat, 2nd declared at 120 (was 117.5); against the rule (Only the third attempt of the last "
+        "lift may be changed.), because: the coach misspoke."
+    )
+    assert hall.attempt(BO, 2).changes == 1
 
 
 def test_the_same_weight_again_changes_nothing(hall: Hall) -> None:

@@ -158,15 +158,17 @@ def test_a_line_holds_each_touched_row_before_and_after(hall: Hall) -> None:
         "version": attempt.version,
         "entered_by": OLGA,
         "entered_at": before["entered_at"],
+        "lifted_at": None,
     }
     assert after == {
         "result": "good",
         "version": attempt.version + 1,
         "entered_by": WANDA,
         "entered_at": hall.journal()[-1].at.isoformat(),
+        "lifted_at": hall.journal()[-1].at.isoformat(),
     }
     before, after = edits.pop(("platform", 1))
-    assert before == {"condition": "lifting", "hand": hand}
+    assert before == {"condition": "lifting", "hand": hand, "loaded_at": before["loaded_at"]}
     assert (after["condition"], after["hand"]["attempt"]) == ("changing", hall.attempt(BO, 1).id)
     assert edits == {}
 

@@ -24,7 +24,7 @@ def test_a_result_is_entered_and_the_crew_gets_its_next_change(
 ) -> None:
     attempt, following = hall.attempt(ADA, 1), hall.attempt(BO, 1)
     hall.load()
-    touched = {("attempt", attempt.id): JUDGED, ("platform", 1): {"condition", "hand"}}
+    touched = {("attempt", attempt.id): JUDGED | {"lifted_at"}, ("platform", 1): {"condition", "hand", "loaded_at"}}
     with changes(hall, touched):
         assert hall.judge(ADA, 1, result) == f"Ada Brook: Squat, 1st: {words} at 100."
     after = hall.attempt(ADA, 1)

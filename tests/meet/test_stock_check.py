@@ -77,7 +77,7 @@ def test_what_no_borrowed_plate_makes_is_said_apart() -> None:
     check = check_stock(KG_SET, masses("20", "60"), STEP)
     assert check.beyond == masses("20", "22.5")
     assert sentences(check, "kg", 2)[-1] == (
-        "No borrowed plates make 20 kg; 22.5 kg: under the bar, or the sleeve is full."
+        "No borrowed plates make 20 kg; 22.5 kg: lighter than the empty bar, or more than there is room for."
     )
 
 
