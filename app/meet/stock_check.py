@@ -10,7 +10,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
-from app.loading.chart import loadable
+from app.loading.chart import Chart, loadable
 from app.loading.equipment import Equipment, Plate
 from app.loading.mass import show_mass
 from app.meet.silence import step_up
@@ -113,9 +113,8 @@ def _kinds(equipment: Equipment, lendable: Sequence[Plate]) -> list[Plate]:
 def _most_useful(
     equipment: Equipment, missing: tuple[Fraction, ...], kinds: Sequence[Plate]
 ) -> tuple[Shortage | None, Equipment, tuple[Fraction, ...]]:
-    """Most weights made, then fewest pieces, then the lightest plate."""
-    best: Shortage | None = None
-    stock, left = equipment, missing
+    """Most weights made, then fewest pieces, then fewest plates on the bar, then the lightest plate."""
+    tries: list[tuple[Shortage, Equipment, tuple[Fraction, ...]]] = []
     ends = equipment.implement.ends
     for plate in sorted(kinds, key=lambda one: one.face):
         owned = equipment.plate(plate.face)
@@ -123,12 +122,21 @@ def _most_useful(
         for pieces in range(ends - odd, MOST_BORROWED * ends + 1, ends):
             tried = with_more(equipment, plate, pieces)
             still = tuple(weight for weight in missing if not loadable(tried, weight))
-            makes = len(missing) - len(still)
-            if makes and (best is None or (makes, -pieces) > (best.makes, -best.pieces)):
-                best, stock, left = Shortage(plate.face, pieces, makes), tried, still
+            if len(still) < len(missing):
+                tries.append((Shortage(plate.face, pieces, len(missing) - len(still)), tried, still))
             if not still:
                 break
-    return best, stock, left
+    if not tries:
+        return None, equipment, missing
+    best = max((one.makes, -one.pieces) for one, _, _ in tries)
+    tied = [one for one in tries if (one[0].makes, -one[0].pieces) == best]
+    return min(tied, key=lambda one: _plates_needed(one[1], missing)) if len(tied) > 1 else tied[0]
+
+
+def _plates_needed(equipment: Equipment, weights: Sequence[Fraction]) -> int:
+    """Plates of the chart's stacks for those of these weights that have one: three chips do no plate's work well."""
+    chart = Chart(equipment)
+    return sum(len(chart.stack(weight) or ()) for weight in weights)
 
 
 def best_to_borrow(

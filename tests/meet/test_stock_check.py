@@ -81,6 +81,12 @@ def test_what_no_borrowed_plate_makes_is_said_apart() -> None:
     )
 
 
+def test_of_two_plates_that_would_do_the_one_is_short_that_leaves_fewer_on_the_bar() -> None:
+    stock = bar(*((face, 2) for face in ("25", "20", "15", "10", "5", "0.25")), ("2.5", 4), ("0.5", 2))
+    check = check_stock(stock, masses("60", "100"), STEP, [Plate(Fraction("1.25"), 0)])
+    assert check.shortages[0].face == Fraction("1.25")  # not a second pair of 0.5s beside the 0.25s
+
+
 def test_a_lone_plate_needs_only_its_partner() -> None:
     stock = bar(("25", 6), ("20", 2), ("15", 2), ("10", 2), ("5", 2), ("2.5", 2), ("1.25", 1))
     check = check_stock(stock, masses("60", "100"), STEP)
@@ -92,7 +98,8 @@ def test_a_belt_is_short_by_single_pieces() -> None:
     belt = bar(("20", 1), ("10", 1), ("5", 1), ("2.5", 1), mass="0", collar=None, ends=1)
     check = check_stock(belt, masses("0", "35"), Fraction("2.5"))
     assert check.missing == masses("40")
-    assert check.shortages == (Shortage(Fraction("2.5"), 1, 1),)
+    # A second 2.5 would make it too, of five plates; a second 20 makes it of two.
+    assert check.shortages == (Shortage(Fraction(20), 1, 1),)
 
 
 @pytest.mark.parametrize(
