@@ -14,6 +14,8 @@ from app.desk.entry import Desk
 from app.web import htmx
 from app.web.crew_view import bare_crew_view, crew_view
 from app.web.house import DeskDep, OfficialDep, frame, page, who
+from app.web.languages import words_in
+from app.web.screen import the_screen
 
 router = APIRouter(prefix="/platforms/{platform_id}")
 ROLE = "crew"
@@ -27,10 +29,12 @@ def show_crew(request: Request, platform_id: int, desk: DeskDep, official: Offic
 
 def _screen(request: Request, desk: Desk, platform_id: int, official: str) -> Response:
     one = board(desk, platform_id)
+    screen = the_screen(request)
+    words = words_in(screen.language)
     name = "crew/_now.html" if htmx.wants_fragment(request) else "crew/page.html"
     around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Crew")
-    view = bare_crew_view(one.now) if isinstance(one, Bare) else crew_view(one)
-    return page(name, frame=around, view=view)
+    view = bare_crew_view(one.now, words.say) if isinstance(one, Bare) else crew_view(one, words.say)
+    return page(name, 200, frame=around, view=view, screen=screen, **words.context())
 
 
 @router.post("/loaded")

@@ -3,28 +3,62 @@
 from __future__ import annotations
 
 import logging
-from itertools import islice
+from collections.abc import Sequence
 
 from app.desk.bar import instruction_name
 from app.desk.board import Board, Step
 from app.loading.mass import show_mass
 from app.loading.stack import WrongLoad
-from app.meet.model import attempt_name
+from app.meet.model import ORDINALS
 from app.meet.order import Turn
 from app.meet.platform import Condition
 from app.store.picture import Picture
-from app.web.views import ChangeView, CrewState, CrewView, RackView, ThenView, UpView
+from app.web.languages import Say
+from app.web.views import ChangeView, CrewState, CrewView, FallView, RackView, ThenView, UpView
 from app.web.words import clock_words, end_view, plate_views, side_words, stack_words, where_words
 
 THEN = 3
 WANTED_WITHIN = 2
+
+# Whole sentences, so that a translator sees each in one piece; see app/web/locales.
 NO_FLIGHT = "The table has not brought a flight to this platform yet."
+HELD = "Nothing moves until the table says so."
+NOBODY_KNOWS = "Nobody knows what is on the bar. Strip it, then build this from empty."
+NOT_VERIFIED = "The load could not be verified. Load by the chart and tell the table."
+NOT_HANDED_IN = "{lifter} has not handed in a weight. By the rule it will be {weight} {unit}."
+CANNOT_BE_MADE = "{weight} cannot be made with the plates here. The table has been told."
+NO_OPENERS = "{number} lifters of this flight have no opener. The table is asked for them."
+FLIGHT_FINISHED = "{flight} has finished this lift. The table brings the next flight."
+NOBODY_LEFT = "Nobody is left to lift in this round."
+PLATE_GONE = "A plate of this change is no longer at the platform."
+MESSAGES = (
+    NO_FLIGHT,
+    HELD,
+    NOBODY_KNOWS,
+    NOT_VERIFIED,
+    NOT_HANDED_IN,
+    CANNOT_BE_MADE,
+    NO_OPENERS,
+    FLIGHT_FINISHED,
+    NOBODY_LEFT,
+    PLATE_GONE,
+)
+NOTES = (
+    "round {number}",
+    "same weight",
+    "not handed in",
+    "cannot be made",
+    "Rack",
+    "Chain",
+    *ORDINALS.values(),
+)
+
 SHOWS_HAND = ("changing", "unknown", "lifting", "changed")
 
 log = logging.getLogger("platewright.wrong_load")
 
 
-def bare_crew_view(now: Picture) -> CrewView:
+def bare_crew_view(now: Picture, say: Say = str) -> CrewView:
     """The screen of a platform without flights."""
     return CrewView(
         platform_id=now.platform_id,
@@ -38,13 +72,13 @@ def bare_crew_view(now: Picture) -> CrewView:
         rack=(),
         then=(),
         keep_out=(),
-        message=NO_FLIGHT,
+        message=say(NO_FLIGHT),
     )
 
 
-def crew_view(one: Board) -> CrewView:
-    """The one screen the crew reads."""
-    state, message = _state(one)
+def crew_view(one: Board, say: Say = str) -> CrewView:
+    """The one screen the crew reads, in the language that ``say`` speaks."""
+    state, message = _state(one, say)
     change = None
     if state in SHOWS_HAND and one.now.bar.hand is not None:
         try:
@@ -54,10 +88,7 @@ def crew_view(one: Board) -> CrewView:
             # on the bar, nothing is to be loaded: a plate of the old change may well have been taken away.)
             if state != "changed":
                 log.exception("a stack failed its re-sum on platform %s", one.now.platform)
-                state, message = (
-                    "hold",
-                    f"The load could not be verified: {wrong} Load by the chart and tell the table.",
-                )
+                state, message = "hold", f"{say(NOT_VERIFIED)} {wrong}"
     return CrewView(
         platform_id=one.now.platform_id,
         platform=one.now.platform,
@@ -65,59 +96,60 @@ def crew_view(one: Board) -> CrewView:
         revision=one.now.revision,
         as_of=clock_words(one.now.changed_at),
         state=state,
-        up=_up(one, state),
+        up=_up(one, state, say),
         change=change,
-        rack=() if state == "changed" else _rack(one),
-        then=_then(one),
+        rack=() if state == "changed" else _rack(one, say),
+        then=then_views(one.up, coming(one), say),
         keep_out=_keep_out(one) if state == "changing" else (),
         message=message,
         shown=instruction_name(one.now.bar),
         new_weight=show_mass(one.up.weight) if state == "changed" and one.up else "",
         bar_now=_bar_now(one, state),
+        fall=_fall(one, say) if state == "lifting" else None,
     )
 
 
-def _state(one: Board) -> tuple[CrewState, str]:
+def _state(one: Board, say: Say) -> tuple[CrewState, str]:
     """What fills the screen, and the one sentence it may need."""
     bar = one.now.bar
     if not one.here:
-        return "idle", NO_FLIGHT
+        return "idle", say(NO_FLIGHT)
     if bar.condition is Condition.HOLD:
-        return "hold", "Nothing moves until the table says so."
+        return "hold", say(HELD)
     if one.ask:
-        return "changed", _why_asked(one)
+        return "changed", _why_asked(one, say)
     if bar.hand is None:
-        return _resting(one)
+        return _resting(one, say)
     if bar.condition is Condition.LIFTING:
         return "lifting", ""
     if bar.hand.before is None:
-        return "unknown", "Nobody knows what is on the bar. Strip it, then build this from empty."
+        return "unknown", say(NOBODY_KNOWS)
     return "changing", ""
 
 
-def _resting(one: Board) -> tuple[CrewState, str]:
+def _resting(one: Board, say: Say) -> tuple[CrewState, str]:
     """No change is out: nobody is left, or the next weight is not there to be loaded."""
     if one.up is None:
-        return "finished", _finished(one)
+        return "finished", _finished(one, say)
     weight = show_mass(one.up.weight)
     if one.up.assumed:
-        name, unit = one.up.lifter.name, one.now.unit
-        return "waiting", f"{name} has not handed in a weight. By the rule it will be {weight} {unit}."
-    return "waiting", f"{weight} cannot be made with the plates here. The table has been told."
+        words = say(NOT_HANDED_IN)
+        return "waiting", words.format(lifter=one.up.lifter.name, weight=weight, unit=one.now.unit)
+    return "waiting", say(CANNOT_BE_MADE).format(weight=weight)
 
 
-def _finished(one: Board) -> str:
+def _finished(one: Board, say: Say) -> str:
     if one.no_opener:
-        return f"{len(one.no_opener)} lifters of this flight have no opener. The table is asked for them."
-    return f"{one.flight.name} has finished this lift. The table brings the next flight."
+        return say(NO_OPENERS).format(number=len(one.no_opener))
+    return say(FLIGHT_FINISHED).format(flight=one.flight.name)
 
 
-def _why_asked(one: Board) -> str:
+def _why_asked(one: Board, say: Say) -> str:
     if one.up is None:
-        return "Nobody is left to lift in this round."
+        return say(NOBODY_LEFT)
     hand = one.now.bar.hand
     if hand is not None and hand.attempt_id == one.up.attempt.id and hand.weight == one.up.weight:
-        return "A plate of this change is no longer at the platform."
+        return say(PLATE_GONE)
     return ""
 
 
@@ -131,15 +163,19 @@ def _shown_turn(one: Board) -> Turn | None:
     return Turn(attempt, lifter, hand.weight, assumed=False) if attempt and lifter else one.up
 
 
-def _up(one: Board, state: CrewState) -> UpView | None:
+def _up(one: Board, state: CrewState, say: Say) -> UpView | None:
     turn = _shown_turn(one) if state in SHOWS_HAND else one.up
-    if turn is None:
-        return None
+    return None if turn is None else up_view(one, turn, say)
+
+
+def up_view(one: Board, turn: Turn, say: Say) -> UpView:
+    """Who lifts, and what."""
+    number = turn.attempt.number
     return UpView(
         lifter=turn.lifter.name,
         lot=str(turn.lifter.lot),
-        attempt=attempt_name(one.lift.name, turn.attempt.number),
-        flight=f"{one.flight.name}, {one.lift.name}, round {turn.attempt.number}",
+        attempt=f"{one.lift.name}, {say(ORDINALS.get(number, f'{number}th'))}",
+        flight=f"{one.flight.name}, {one.lift.name}, {say('round {number}').format(number=number)}",
         weight=show_mass(turn.weight),
     )
 
@@ -168,14 +204,17 @@ def change_view(one: Board, step: Step) -> ChangeView | None:
     )
 
 
-def _rack(one: Board) -> tuple[RackView, ...]:
+def _rack(one: Board, say: Say) -> tuple[RackView, ...]:
     """The rack only where it differs from the lifter before."""
     turn = _shown_turn(one)
-    if turn is None:
-        return ()
+    return () if turn is None else rack_views(one, turn, _before_id(one, turn), say)
+
+
+def rack_views(one: Board, turn: Turn, before_id: int, say: Say) -> tuple[RackView, ...]:
+    """The rack's setting for a turn, where it differs from that of the lifter ``before_id``."""
     new = one.now.racks.get((turn.lifter.id, one.lift.id), "")
-    old = one.now.racks.get((_before_id(one, turn), one.lift.id), "")
-    name = "Rack" if one.tool.kind == "bar" else "Chain"
+    old = one.now.racks.get((before_id, one.lift.id), "")
+    name = say("Rack") if one.tool.kind == "bar" else say("Chain")
     return (RackView(name, old, new),) if new and new != old else ()
 
 
@@ -191,41 +230,61 @@ def _before_id(one: Board, turn: Turn) -> int:
     return last.lifter_id if last else 0
 
 
-def _coming(one: Board) -> list[Step]:
+def coming(one: Board) -> list[Step]:
     """The steps after the one on the screen."""
     return [step for step in one.steps if one.up is None or step.turn.attempt.id != one.up.attempt.id]
 
 
-def _then(one: Board) -> tuple[ThenView, ...]:
+def then_views(before: Turn | None, steps: Sequence[Step], say: Say) -> tuple[ThenView, ...]:
+    """The first lines of what follows ``before``."""
     lines = []
-    before = one.up
-    for step in islice(_coming(one), THEN):
-        lines.append(ThenView(show_mass(step.turn.weight), step.turn.lifter.name, _note(before, step)))
+    for step in steps[:THEN]:
+        lines.append(ThenView(show_mass(step.turn.weight), step.turn.lifter.name, _note(before, step, say)))
         before = step.turn
     return tuple(lines)
 
 
-def _note(before: Turn | None, step: Step) -> str:
+def _note(before: Turn | None, step: Step, say: Say) -> str:
     turn = step.turn
     notes = []
     if before is not None and turn.attempt.number != before.attempt.number:
-        notes.append(f"round {turn.attempt.number}")
+        notes.append(say("round {number}").format(number=turn.attempt.number))
     elif before is not None and turn.weight == before.weight:
-        notes.append("same weight")
+        notes.append(say("same weight"))
     if turn.assumed:
-        notes.append("not handed in")
+        notes.append(say("not handed in"))
     if step.stack is None:
-        notes.append("cannot be made")
+        notes.append(say("cannot be made"))
     return ", ".join(notes)
 
 
+def _fall(one: Board, say: Say) -> FallView | None:
+    """While a round's last lift is on: the next round's first bar, so that the great change can be prepared."""
+    steps = coming(one)
+    if one.up is None or not steps or steps[0].turn.attempt.number == one.up.attempt.number:
+        return None
+    try:
+        change = change_view(one, steps[0])
+    except WrongLoad:
+        log.exception("the bar after this lift failed its re-sum on platform %s", one.now.platform)
+        return None
+    turn = steps[0].turn
+    if change is None:
+        return None
+    return FallView(show_mass(turn.weight), turn.lifter.name, _note(one.up, steps[0], say), change)
+
+
 def _keep_out(one: Board) -> tuple[str, ...]:
-    """Faces that come off now and are wanted again within two lifts."""
     hand = one.now.bar.hand
-    if hand is None or not one.steps or one.steps[0].hands is None or hand.before is None:
+    return () if hand is None or hand.before is None else keep_out(one.steps)
+
+
+def keep_out(steps: Sequence[Step]) -> tuple[str, ...]:
+    """Faces that come off in the first step and are wanted again within two lifts."""
+    if not steps or steps[0].hands is None:
         return ()
-    off = set(one.steps[0].hands.off)
-    wanted = {face for step in one.steps[1 : 1 + WANTED_WITHIN] if step.hands for face in step.hands.on}
+    off = set(steps[0].hands.off)
+    wanted = {face for step in steps[1 : 1 + WANTED_WITHIN] if step.hands for face in step.hands.on}
     return tuple(show_mass(face) for face in sorted(off & wanted, reverse=True))
 
 

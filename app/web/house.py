@@ -13,7 +13,7 @@ from starlette.responses import HTMLResponse
 
 from app.desk.entry import Desk
 from app.desk.hub import MemoryHub
-from app.web import drawing
+from app.web import drawing, languages
 from app.web.views import Frame, Link
 
 PROJECT = Path(__file__).resolve().parents[2]
@@ -29,7 +29,7 @@ def make_templates() -> Environment:
         trim_blocks=True,
         lstrip_blocks=True,
     )
-    made.globals |= drawing.TEMPLATE_GLOBALS
+    made.globals |= drawing.TEMPLATE_GLOBALS | languages.TEMPLATE_GLOBALS
     return made
 
 
@@ -72,6 +72,7 @@ def frame(
     if platform_id is not None:
         pages += [
             ("Equipment", f"/platforms/{platform_id}/equipment"),
+            ("Flights", f"/platforms/{platform_id}/flights"),
             ("Rules", f"/platforms/{platform_id}/rules"),
             ("Table", f"/platforms/{platform_id}/table"),
             ("Crew", f"/platforms/{platform_id}/crew"),

@@ -95,6 +95,16 @@ class ThenView:
     note: str  # "same weight", "new round", "next flight", "not handed in"
 
 
+@dataclass(frozen=True, slots=True)
+class FallView:
+    """The first bar of the next round, told while the last lift of this one is on."""
+
+    weight: str
+    lifter: str
+    note: str
+    change: ChangeView
+
+
 CrewState = Literal["idle", "waiting", "changing", "lifting", "changed", "hold", "unknown", "finished"]
 
 
@@ -117,6 +127,7 @@ class CrewView:
     shown: str = ""  # names the instruction shown; the forms send it back as hidden field "shown"
     new_weight: str = ""  # state "changed": the weight that replaces up.weight
     bar_now: str = ""  # what is known to be on each end, "25 + 15"
+    fall: FallView | None = None  # at a round's end, while the bar is loaded
 
 
 @dataclass(frozen=True, slots=True)

@@ -19,11 +19,13 @@ PAGES = {
     "/platforms/1/crew": "Crew, Main hall",
     "/platforms/1/check": "Check, Main hall",
     "/platforms/1/announcer": "Announcer, Main hall",
+    "/platforms/1/screen": "This screen, Main hall",
     "/platforms/1/cards": "Cards, Main hall",
     "/platforms/1/cards/1/1/2": "Card, Flight A · Squat · round 2",
     "/platforms/1/equipment": "Equipment, Main hall",
 }
-WALLS = ("/platforms/1/crew", "/platforms/1/check", "/platforms/1/announcer")  # a screen, without navigation
+# Walls without navigation, and a page that is reached from them.
+WALLS = ("/platforms/1/crew", "/platforms/1/check", "/platforms/1/announcer", "/platforms/1/screen")
 FILES = {"/meets/1/roster.csv"}
 STREAMS = {"/platforms/1/events"}
 POSTS = (
@@ -40,6 +42,7 @@ POSTS = (
     "/platforms/1/flight",
     "/platforms/1/table-bar",
     "/platforms/1/loaded",
+    "/platforms/1/screen",
     "/platforms/1/bar",
     "/api/plan",
 )
