@@ -61,5 +61,5 @@ def _off_balance(kit: Kit, rows: Rows) -> tuple[NDArray[Any], Fraction]:
     inside = np.cumsum(width, axis=1) - width
     total = mass.sum(axis=1)
     moment = (mass * (2 * inside + width)).sum(axis=1) - total * width.sum(axis=1)
-    heaviest = int(total.max())
+    heaviest = int(total.max(initial=0))
     return np.abs(moment), kit.mm / (2 * heaviest) if heaviest else Fraction(1)

@@ -30,20 +30,15 @@ from app.planning.sweep import Course
 from app.planning.watch import Watch
 
 
-def stack_course(problem: Problem, watch: Watch) -> Course:
-    """The course over every allowed stack of every weight."""
+def stack_course(problem: Problem, watch: Watch, listed: Sequence[Family] | None = None) -> Course:
+    """The course over every allowed stack of every weight, or over those listed."""
     kit, request, alphabet = problem.kit, problem.request, problem.alphabet
-    watch.room(problem.how_many_stacks() * LISTED_BYTES)
-    vectors = [problem.vectors[share] for share in problem.distinct]
+    if listed is None:
+        watch.room(problem.how_many_stacks() * LISTED_BYTES)
+        vectors = [problem.vectors[share] for share in problem.distinct]
+        listed = families(kit, request, alphabet, vectors)
     start = (alphabet.write(start_row(problem)), np.array([len(kit.start)]))
-    return _course(
-        problem,
-        request.access,
-        start,
-        families(kit, request, alphabet, vectors),
-        np.zeros(1, problem.prices.dtype),
-        watch,
-    )
+    return _course(problem, request.access, start, listed, np.zeros(1, problem.prices.dtype), watch)
 
 
 def sorted_course(problem: Problem, watch: Watch) -> Course:
@@ -98,14 +93,20 @@ Bars = list[tuple[ComfortBy, int]]
 def comfort_bars(problem: Problem, share: int) -> Bars:
     """What each comfort rule allows at most for a share, without listing an order: the rules one after another
     on the stacks with the widest inside (see :func:`app.planning.arrange.inside_first`). Not for balance."""
-    kit, alphabet, bars = problem.kit, problem.alphabet, []
-    rows = sorted_digits(alphabet, problem.vectors[share], inside_first(kit, problem.request))
+    inside = inside_first(problem.kit, problem.request)
+    return set_bars(problem, sorted_digits(problem.alphabet, problem.vectors[share], inside))[0]
+
+
+def set_bars(problem: Problem, rows: NDArray[Any]) -> tuple[Bars, NDArray[np.bool_]]:
+    """What each comfort rule allows at most, one rule after another, and which rows keep to all."""
+    bars: Bars = []
+    kept = np.ones(len(rows), np.bool_)
     for rule in problem.request.comfort[leading_thickness(problem.request) :]:
-        values, unit = comfort_values(kit, rows, rule.by)
-        most = int(values.min()) + int(rule.slack // unit)
+        values, unit = comfort_values(problem.kit, rows, rule.by)
+        most = int(values[kept].min()) + int(rule.slack // unit)
         bars.append((rule.by, most))
-        rows = rows[values <= most]
-    return bars
+        kept &= values <= most
+    return bars, kept
 
 
 def comfortable(problem: Problem, bars: Bars, rows: NDArray[Any]) -> NDArray[np.bool_]:

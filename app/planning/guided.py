@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from app.loading.equipment import Access
-from app.planning.course import comfort_bars, comfortable, fees_of, start_row
+from app.planning.course import Bars, comfort_bars, comfortable, fees_of, start_row
 from app.planning.orders import obeying
 from app.planning.prices import Numbers
 from app.planning.problem import Problem
@@ -77,6 +77,7 @@ class Guided:
     most: int
     width: int
     limit: int | None = None
+    bars: dict[int, Bars] | None = None
     narrowed: bool = False
     beyond: int = field(init=False)
     over: int = field(init=False)
@@ -84,7 +85,8 @@ class Guided:
     def __post_init__(self) -> None:
         self.smaller, self.larger = neighbours(self.course, self.problem.kit.kinds)
         self.beyond = self.over = self.problem.prices.never
-        self.bars = {share: comfort_bars(self.problem, share) for share in self.problem.distinct}
+        if self.bars is None:
+            self.bars = {share: comfort_bars(self.problem, share) for share in self.problem.distinct}
 
     def run(self) -> list[Stacks] | None:
         """The stacks reached at every attempt, the start first; ``None`` when no chain was found."""
@@ -182,7 +184,8 @@ class Guided:
         problem, part = self.problem, self.course.part(attempt)
         share = problem.kit.shares[attempt - 1]
         here = here.some(np.isin(here.nodes, part.ends))
-        here = here.some(comfortable(problem, self.bars[share], problem.alphabet.read(here.codes)))
+        bars = self.bars[share] if self.bars else []
+        here = here.some(comfortable(problem, bars, problem.alphabet.read(here.codes)))
         fee = fees_of(problem, np.full(len(here), share), problem.alphabet.read(here.codes))
         spent = here.spent + (fee // problem.prices.fold if self.limit is not None else 0)
         paid = self._cut(Stacks(here.codes, here.nodes, here.price + fee, spent), self.to_go.after[attempt])

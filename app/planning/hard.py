@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from app.planning.course import count_course, fees_of
+from app.planning.course import Bars, count_course, fees_of
 from app.planning.distance import Distance
 from app.planning.guided import Guided, Stacks
 from app.planning.limits import Limits
@@ -30,6 +30,7 @@ class Hunt:
     watch: Watch
     most_stacks: int
     first_width: int = 2000
+    bars: dict[int, Bars] | None = None
 
     def __post_init__(self) -> None:
         self.over = 0
@@ -112,7 +113,7 @@ class Hunt:
         """A sweep wide enough to prove something; where any chain found is a proof, the first to find one."""
         width = self.first_width
         while True:
-            guided = Guided(self.problem, self.course, self.to_go, self.watch, most, width, limit)
+            guided = Guided(self.problem, self.course, self.to_go, self.watch, most, width, limit, self.bars)
             reached = guided.run()
             if not guided.narrowed or width >= self.most_stacks or (proves and reached is not None):
                 return guided, reached

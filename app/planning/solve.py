@@ -11,6 +11,7 @@ from app.planning.bychart import by_chart, by_rule, plain_bound
 from app.planning.compose import compose
 from app.planning.depart import Departure, aimed
 from app.planning.hard import Hunt
+from app.planning.listed import by_listing
 from app.planning.problem import Problem, prepare
 from app.planning.request import Access, Aim, ComfortBy, Order, PlanRequest
 from app.planning.solution import Solution, priced
@@ -92,7 +93,9 @@ def _proved(problem: Problem, budget: Budget, watch: Watch) -> Solution:
             if solution.kept is not False:
                 return solution
     balanced = any(rule.by is ComfortBy.BALANCE for rule in problem.request.comfort)
-    if balanced or problem.request.order is Order.HEAVIEST_INSIDE or problem.how_many_stacks() <= FEW_STACKS:
+    if balanced and problem.request.order is not Order.HEAVIEST_INSIDE:
+        return by_listing(problem, watch, budget.memory_bytes // 2000)
+    if problem.request.order is Order.HEAVIEST_INSIDE or problem.how_many_stacks() <= FEW_STACKS:
         return by_sweep(problem, watch)
     return _hunted(problem, budget, watch)
 

@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from app.planning.arrange import counts_of
+from collections.abc import Sequence
+
+from app.planning.arrange import Family, counts_of
 from app.planning.chains import best_chain
 from app.planning.course import count_course, counts_are_enough, sorted_course, stack_course
 from app.planning.inplace import leave_in_place
@@ -41,9 +43,9 @@ def by_stays(problem: Problem, watch: Watch) -> Solution:
     return priced(problem, best_by_stays(Stays(problem, count_course(problem, watch), watch)))
 
 
-def by_sweep(problem: Problem, watch: Watch) -> Solution:
-    """The plain sweep over all stacks: always exact, as large as the stacks are many."""
-    course = stack_course(problem, watch)
+def by_sweep(problem: Problem, watch: Watch, listed: Sequence[Family] | None = None) -> Solution:
+    """The plain sweep over all stacks, or over those listed: always exact, as large as they are many."""
+    course = stack_course(problem, watch, listed)
     chain, kept = best_chain(problem, course, problem.request.access, watch)
     return _with(priced(problem, kinds(problem.alphabet.read(course.graph.codes[chain[1:]]))), kept)
 

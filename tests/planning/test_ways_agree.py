@@ -1,11 +1,15 @@
 """Every faster way to the best plan agrees with the plain sweep over all stacks, to the last tie-break."""
 
+from dataclasses import replace
+from fractions import Fraction
+
 import pytest
 from hypothesis import assume, given
 from hypothesis import strategies as st
 
-from app.planning import Access, Aim, Budget, ComfortBy, Order, PlanRequest, Refusal
+from app.planning import Access, Aim, Budget, Comfort, ComfortBy, Order, PlanRequest, Refusal
 from app.planning.hard import Hunt
+from app.planning.listed import list_comfortable
 from app.planning.problem import Problem, prepare
 from app.planning.solution import Solution
 from app.planning.watch import Watch
@@ -65,6 +69,19 @@ def test_the_guided_sweep_finds_the_best_chain_however_narrow_it_starts(order: O
         same(problem, hunt.best(sorted_only(problem, WATCH)), by_sweep(problem, WATCH))
 
     holds()
+
+
+@given(
+    requests(comfort=(Comfort(ComfortBy.BALANCE, Fraction(3)), Comfort(ComfortBy.RIMS, Fraction(20)))),
+    st.sampled_from(FREE),
+)
+def test_balance_is_judged_by_listing_and_hunted_all_the_same(request: PlanRequest, order: Order) -> None:
+    problem = prepared(replace(request, order=order))
+    listed = list_comfortable(problem, WATCH)
+    best = by_sweep(problem, WATCH)
+    same(problem, by_sweep(problem, WATCH, listed.families), best)
+    hunt = Hunt(problem, WATCH, most_stacks=100_000, first_width=3, bars=listed.bars)
+    same(problem, hunt.best(by_sweep(problem, WATCH, listed.sampled(1))), best)
 
 
 @given(requests(order=Order.ANY, access=Access.BOTH_ENDS, comfort=(), most_targets=6))
