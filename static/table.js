@@ -27,6 +27,7 @@
     if (box.id === "find-lot") { if (event.key === "Enter") { event.preventDefault(); find(box); } return; }
     if (takesText(box) && !isWeight(box)) return;
     const key = event.key.toLowerCase();
+    if (isWeight(box) && key === "r" && box.value !== "") return; // 142.5r: a record attempt
     const target = document.querySelector(`[data-key="${CSS.escape(key)}"]`);
     const place = document.querySelector(`[data-key-focus="${CSS.escape(key)}"]`);
     // A repeated key is a finger that lay too long, not a second decision.
@@ -48,6 +49,19 @@
   }
 
   document.addEventListener("keydown", onKey);
+
+  // How long somebody still has to hand in. For the table only; the crew's screen never counts down.
+  function countDown() {
+    for (const place of document.querySelectorAll("[data-until]")) {
+      const left = Math.ceil((Date.parse(place.dataset.until) - Date.now()) / 1000);
+      const words = left > 0 ? `${left} s left` : "time is over";
+      if (place.textContent !== words) place.textContent = words;
+      place.toggleAttribute("data-over", left <= 0);
+    }
+  }
+  setInterval(countDown, 500);
+  document.addEventListener("htmx:after:swap", countDown);
+  document.addEventListener("DOMContentLoaded", countDown);
 
   // The version that counts is the one on the screen when typing began: an update that arrives meanwhile must
   // not make a colleague's entry look as if it had been seen.
@@ -85,5 +99,19 @@
       // Boxes that nobody is typing in show what the server says.
       else if (!seen.has(attempt.value) && box.value !== box.defaultValue) box.value = box.defaultValue;
     }
+  });
+
+  // The page also fetches itself when the server announces what this very screen has just entered; that answer
+  // says nothing and points nowhere, and must not take away what the entry's own answer said.
+  const SAID_STAYS_MS = 5000;
+  let said = { text: "", until: 0 };
+  let cursor = "";
+  document.addEventListener("focusin", (event) => { if (isWeight(event.target)) cursor = event.target.id; });
+  document.addEventListener("htmx:after:swap", () => {
+    const place = document.getElementById("said");
+    if (place?.textContent.trim()) said = { text: place.textContent, until: Date.now() + SAID_STAYS_MS };
+    else if (place && Date.now() < said.until) place.textContent = said.text;
+    if (document.activeElement !== document.body) return;
+    (document.querySelector("[data-focus]") ?? document.getElementById(cursor))?.focus({ preventScroll: true });
   });
 })();

@@ -7,6 +7,7 @@ from fractions import Fraction
 
 from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import AgainstTheRules, NotAllowedNow
+from app.desk.people import check_owner
 from app.desk.subject import Seen, Subject, at_words, find_subject, moment_of, stamp
 from app.loading.mass import show_mass
 from app.meet.check_declaration import check_declaration
@@ -18,7 +19,7 @@ from app.meet.ruled_order import ruled_turns
 from app.meet.rules import Default
 from app.store.picture import store_bar
 
-__all__ = ["Seen", "check", "declare", "judge"]
+__all__ = ["Seen", "breaches_of", "declare", "judge", "read_entry"]
 
 RECORD_MARK = "r"  # typed after a weight: 142.5r is a record attempt
 
@@ -32,11 +33,12 @@ def declare(desk: Desk, platform_id: int, seen: Seen, text: str, reason: str = "
     """
     with platform_entry(desk, platform_id, who) as work:
         subject = find_subject(work, seen)
-        weight, record = _read(subject, text)
+        check_owner(work, subject.lifter.flight_id)
+        weight, record = read_entry(subject, text)
         attempt = subject.attempt
         if (attempt.weight, attempt.record) == (weight, record) and attempt.result is Result.OPEN:
             return f"{subject.name} stays at {show_mass(weight)}."
-        overridden = _judged(_breaches(work, subject, weight, record), " ".join(reason.split()))
+        overridden = _judged(breaches_of(work, subject, weight, record), " ".join(reason.split()))
         was = "" if attempt.weight is None else f" (was {show_mass(attempt.weight)})"
         subject.row.changes += attempt.weight is not None and attempt.weight != weight
         subject.row.weight, subject.row.record = weight, record
@@ -46,15 +48,8 @@ def declare(desk: Desk, platform_id: int, seen: Seen, text: str, reason: str = "
         return f"{work.what}."
 
 
-def check(desk: Desk, platform_id: int, seen: Seen, text: str, *, who: str) -> list[Breach]:
-    """What would be said to this weight, without entering it. Raises what cannot even be read."""
-    with platform_entry(desk, platform_id, who) as work:
-        subject = find_subject(work, seen)
-        weight, record = _read(subject, text)
-        return _breaches(work, subject, weight, record)
-
-
-def _breaches(work: Work, subject: Subject, weight: Fraction, record: bool) -> list[Breach]:  # noqa: FBT001 - with its weight
+def breaches_of(work: Work, subject: Subject, weight: Fraction, record: bool) -> list[Breach]:  # noqa: FBT001 - with its weight
+    """Every rule of the meet that this weight would break now."""
     return check_declaration(
         subject.rules,
         weight,
@@ -81,7 +76,7 @@ def _judged(breaches: list[Breach], reason: str) -> str:
     return f"; against the rule ({' '.join(breach.because for breach in breaches)}), because: {reason[:200]}"
 
 
-def _read(subject: Subject, text: str) -> tuple[Fraction, bool]:
+def read_entry(subject: Subject, text: str) -> tuple[Fraction, bool]:
     """The typed weight and whether it is marked as a record; empty text gives what stands or the default."""
     text = text.strip()
     record = text[-1:].lower() == RECORD_MARK
@@ -118,6 +113,7 @@ def judge(desk: Desk, platform_id: int, seen: Seen, result: Result, *, who: str)
     """
     with platform_entry(desk, platform_id, who) as work:
         subject = find_subject(work, seen)
+        check_owner(work, subject.lifter.flight_id)
         if subject.attempt.result is result:
             return f"{subject.name} stays a {RESULT_WORDS[result]}."
         if result is Result.OPEN:

@@ -6,6 +6,8 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 
+from sqlmodel import select
+
 from app.desk.entry import Desk
 from app.desk.planned import must_ask, plan_for, wish_of
 from app.desk.undo import UNDONE
@@ -22,7 +24,7 @@ from app.planning import Budget
 from app.store.engine import reading
 from app.store.journal import last_redoable, last_undoable
 from app.store.picture import Picture, Tool, key, picture, to_stack
-from app.store.tables import JournalRow
+from app.store.tables import FlightRow, JournalRow
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,6 +75,7 @@ class Board:
     up: Turn | None
     ask: bool
     no_opener: tuple[Lifter, ...]
+    owner: str
     undo: Undoable | None
     redo: Undoable | None
 
@@ -94,6 +97,7 @@ def board(
     with reading(desk.engine) as session:
         now = picture(session, platform_id)
         undo = _named(last_undoable(session, now.meet_id, platform_id))
+        owners = {key(row): row.owner for row in session.exec(select(FlightRow).where(FlightRow.owner != ""))}
         redo = _named(last_redoable(session, now.meet_id, platform_id))
     looked_at = _looked_at(now, flight_id, lift_id)
     if looked_at is None:
@@ -118,7 +122,10 @@ def board(
         steps=steps,
         up=up_next(now.bar, order) if here else None,
         ask=here and must_ask(now.bar, order, equipment),
-        no_opener=without_opener(programme.of_flight(flight.id), programme.of_lift(lift.id)),
+        no_opener=without_opener(
+            [lifter for lifter in programme.of_flight(flight.id) if not lifter.withdrawn], programme.of_lift(lift.id)
+        ),
+        owner=owners.get(flight.id, ""),
         undo=undo,
         redo=redo,
     )

@@ -5,184 +5,130 @@ from __future__ import annotations
 from typing import Annotated
 
 from fastapi import APIRouter, Form
-from starlette.requests import Request
 from starlette.responses import Response
 
-from app.desk import attempts, bar, undo
+from app.desk import ahead, attempts, bar, people, undo
 from app.desk.attempts import Seen
-from app.desk.board import Bare, Board, board
-from app.desk.entry import Desk
-from app.desk.errors import DeskError
+from app.desk.errors import AgainstTheRules, DeskError, NotAllowedNow
+from app.loading.mass import show_mass
 from app.meet.model import Result
-from app.web import htmx
-from app.web.house import DeskDep, OfficialDep, frame, page, who
-from app.web.table_view import table_view
+from app.web.house import page
+from app.web.table_place import Asked, Posted
+from app.web.words import plate_views
 
 router = APIRouter(prefix="/platforms/{platform_id}")
-ROLE = "table"
 
-Looking = Annotated[int | None, Form()]
+LATE_REASON = "handed in in time, entered late"  # the usual one, offered so that Enter is enough
 
 
 @router.get("/table")
-def show_table(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
-    flight: int | None = None,
-    lift: int | None = None,
-) -> Response:
+def show_table(place: Asked) -> Response:
     """The Table, looking at one flight and lift, or at those that are lifting."""
-    return render(request, board(desk, platform_id, flight, lift), official)
-
-
-def render(
-    request: Request,
-    one: Board | Bare,
-    official: str,
-    said: str = "",
-    refused: str = "",
-    status: int = 200,
-    at: int = 0,
-    typed: str = "",
-) -> Response:
-    """The page, or its content for a swap; ``refused`` stands on the line of attempt ``at`` with what was typed."""
-    around = frame(one.now.meet, official, one.now.meet_id, one.now.platform_id, "Table")
-    if isinstance(one, Bare):
-        return page("table/empty.html", status, frame=around, layout=htmx.layout(request), now=one.now)
-    swapped = htmx.wants_fragment(request)
-    view = table_view(one, at if refused else 0)
-    if refused and at not in {row.attempt_id for row in (*view.order, *view.no_opener)}:
-        # Its line is not on this page (any more): said at the top, with what would have been lost.
-        at, refused = 0, f"{refused} You had typed “{typed}”."
-    return page(
-        "table/_now.html" if swapped else "table/page.html",
-        status,
-        frame=around,
-        view=view,
-        said=said,
-        refused=refused,
-        at=at,
-        typed=typed,
-        # The cursor moves when the page is opened and after an entry of one's own, never because of another's.
-        first=not swapped,
-    )
-
-
-def _answer(
-    request: Request,
-    desk: Desk,
-    platform_id: int,
-    official: str,
-    flight: int | None,
-    lift: int | None,
-    said: str,
-) -> Response:
-    """After an entry: the new Table into the page, or for a plain form the page itself."""
-    if htmx.wants_fragment(request):
-        return render(request, board(desk, platform_id, flight, lift), official, said)
-    looking = f"?flight={flight}&lift={lift}" if flight and lift else ""
-    return htmx.go_to(request, f"/platforms/{platform_id}/table{looking}")
+    return place.render()
 
 
 @router.post("/weight")
 def enter_weight(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
+    place: Posted,
     attempt: Annotated[int, Form()],
     version: Annotated[int, Form()],
     weight: Annotated[str, Form()] = "",
-    flight: Looking = None,
-    lift: Looking = None,
+    reason: Annotated[str, Form()] = "",
 ) -> Response:
-    """Hand in a weight for an attempt; empty takes the default."""
+    """Hand in a weight for an attempt; empty takes the default, a reason overrides a rule."""
     try:
-        said = attempts.declare(desk, platform_id, Seen(attempt, version), weight, who=who(official, ROLE))
-    except DeskError as refused:
-        one = board(desk, platform_id, flight, lift)
-        return render(
-            request, one, official, refused=str(refused), status=refused.status_code, at=attempt, typed=weight
+        said = attempts.declare(
+            place.desk, place.platform_id, Seen(attempt, version), weight, reason, who=place.by
         )
-    return _answer(request, desk, platform_id, official, flight, lift, said)
+    except AgainstTheRules as refused:
+        asked = LATE_REASON if refused.late else ""
+        return place.render(refused=str(refused), status=422, at=attempt, typed=weight, reason=asked)
+    except DeskError as refused:
+        return place.render(refused=str(refused), status=refused.status_code, at=attempt, typed=weight)
+    return place.answer(said)
+
+
+@router.get("/ahead")
+def look_ahead(place: Asked, attempt: int, version: int, weight: str = "") -> Response:
+    """Before Enter: what the rules would say to this weight, and what it would need."""
+    if not weight.strip():
+        return page("table/_ahead.html", ahead=ahead.Ahead(()), refused="")
+    try:
+        seen = Seen(attempt, version)
+        found = ahead.look_ahead(place.desk, place.platform_id, seen, weight)
+    except DeskError as refused:
+        return page("table/_ahead.html", refused=str(refused), ahead=None)
+    now = place.board().now
+    return page(
+        "table/_ahead.html",
+        refused="",
+        ahead=found,
+        place=f"{found.place}." if found.place else "",
+        after=show_mass(found.after.weight) if found.after else "",
+        hands=found.hands is not None,
+        off=plate_views(found.hands.off, now) if found.hands else (),
+        on=plate_views(found.hands.on, now) if found.hands else (),
+    )
 
 
 @router.post("/result")
 def enter_result(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
+    place: Posted,
     attempt: Annotated[int, Form()],
     version: Annotated[int, Form()],
     result: Annotated[Result, Form()],
-    flight: Looking = None,
-    lift: Looking = None,
 ) -> Response:
     """Good lift, no lift or pass."""
-    said = attempts.judge(desk, platform_id, Seen(attempt, version), result, who=who(official, ROLE))
-    return _answer(request, desk, platform_id, official, flight, lift, said)
+    seen = Seen(attempt, version)
+    return place.answer(attempts.judge(place.desk, place.platform_id, seen, result, who=place.by))
 
 
 @router.post("/undo")
-def undo_last(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
-    entry: Annotated[int | None, Form()] = None,
-    flight: Looking = None,
-    lift: Looking = None,
-) -> Response:
+def undo_last(place: Posted, entry: Annotated[int | None, Form()] = None) -> Response:
     """Take the last entry back."""
-    said = undo.undo(desk, platform_id, entry, who=who(official, ROLE))
-    return _answer(request, desk, platform_id, official, flight, lift, said)
+    return place.answer(undo.undo(place.desk, place.platform_id, entry, who=place.by))
 
 
 @router.post("/redo")
-def redo_last(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
-    entry: Annotated[int | None, Form()] = None,
-    flight: Looking = None,
-    lift: Looking = None,
-) -> Response:
+def redo_last(place: Posted, entry: Annotated[int | None, Form()] = None) -> Response:
     """Enter again what the last undo took back."""
-    said = undo.redo(desk, platform_id, entry, who=who(official, ROLE))
-    return _answer(request, desk, platform_id, official, flight, lift, said)
+    return place.answer(undo.redo(place.desk, place.platform_id, entry, who=place.by))
 
 
 @router.post("/flight")
-def bring_flight(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
-    flight: Annotated[int, Form()],
-    lift: Annotated[int, Form()],
-) -> Response:
+def bring_flight(place: Posted, flight: Annotated[int, Form()], lift: Annotated[int, Form()]) -> Response:
     """Bring a flight and lift to the platform."""
-    bar.bring_flight(desk, platform_id, flight, lift, who=who(official, ROLE))
-    return _answer(request, desk, platform_id, official, flight, lift, "The flight is on the platform.")
+    bar.bring_flight(place.desk, place.platform_id, flight, lift, who=place.by)
+    return place.answer("The flight is on the platform.")
+
+
+@router.post("/lifter")
+def tell_lifter(place: Posted, lifter: Annotated[int, Form()], do: Annotated[str, Form()]) -> Response:
+    """A lifter withdraws, is back, or is granted a fourth attempt in the lift looked at."""
+    if do == "fourth":
+        if place.lift is None:
+            raise NotAllowedNow("Choose the lift first.")
+        said = people.grant_fourth(place.desk, place.platform_id, lifter, place.lift, who=place.by)
+    else:
+        said = people.withdraw(place.desk, place.platform_id, lifter, back=do == "back", who=place.by)
+    return place.answer(said)
+
+
+@router.post("/owner")
+def tell_owner(place: Posted, take: Annotated[str, Form()]) -> Response:
+    """Who enters for the flight looked at: this official, or anybody."""
+    if place.flight is None:
+        raise NotAllowedNow("Choose the flight first.")
+    tell = people.take_over if take == "yes" else people.hand_back
+    return place.answer(tell(place.desk, place.platform_id, place.flight, who=place.by))
 
 
 @router.post("/table-bar")
 def tell_bar(
-    request: Request,
-    platform_id: int,
-    desk: DeskDep,
-    official: OfficialDep,
-    tell: Annotated[str, Form()],
-    shown: Annotated[str | None, Form()] = None,
-    flight: Looking = None,
-    lift: Looking = None,
+    place: Posted, tell: Annotated[str, Form()], shown: Annotated[str | None, Form()] = None
 ) -> Response:
     """What the table says about the bar: loaded, not-loaded, hold, go, or what it carries."""
-    by = who(official, ROLE)
+    desk, platform_id, by = place.desk, place.platform_id, place.by
     match tell:
         case "loaded":
             bar.bar_is_loaded(desk, platform_id, shown, who=by)
@@ -194,4 +140,4 @@ def tell_bar(
             bar.end_hold(desk, platform_id, who=by)
         case _:
             bar.bar_carries(desk, platform_id, tell, shown, who=by)
-    return _answer(request, desk, platform_id, official, flight, lift, "")
+    return place.answer()

@@ -3,14 +3,16 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from datetime import datetime
 from fractions import Fraction
 
 from app.desk.bar import instruction_name
 from app.desk.board import Board, Step, lifted_last
 from app.loading.mass import show_mass
-from app.meet.model import RESULT_WORDS, ROUNDS, Attempt, Lifter, Result, attempt_name
+from app.meet.model import RESULT_WORDS, Attempt, Lifter, Result, attempt_name
 from app.meet.order import default_weight
 from app.meet.platform import Condition
+from app.web.table_clock import DueLine, due_lines, pace_words, rest_words
 from app.web.views import PlateView
 from app.web.words import clock_words, plate_views, side_words, stack_words
 
@@ -46,6 +48,7 @@ class OrderRow:
     change: str  # "no change", "cannot be made", "build from empty", or "" when off and on say it
     rack: str
     why: str = ""  # why the stack is not the chart's
+    marks: tuple[str, ...] = ()  # "record", "retake"
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,6 +72,9 @@ class ScoreRow:
     rack: str
     cells: tuple[ScoreCell, ...]
     best: str
+    lifter_id: int
+    withdrawn: bool
+    may_have_fourth: bool
 
 
 @dataclass(frozen=True, slots=True)
@@ -117,11 +123,20 @@ class TableView:
     redo_id: int
     redo: str
     focus: int  # the attempt whose weight is wanted next
+    owner: str
+    mine: bool
+    due: tuple[DueLine, ...]
+    rest: str  # whose rest would be too short, "" when nobody's
+    pace: str
+    fourths: bool
     here_now: str  # what the platform is lifting, for a Table that looks elsewhere
 
 
-def table_view(one: Board, focus: int = 0) -> TableView:
-    """The Table at one revision; ``focus`` names an attempt to put the cursor on, 0 for the usual one."""
+def table_view(one: Board, who: str, at: datetime, focus: int = 0) -> TableView:
+    """The Table at one revision, for one official at one moment.
+
+    ``focus`` names an attempt to put the cursor on, 0 for the usual one.
+    """
     now, bar = one.now, one.now.bar
     rows = _order_rows(one)
     return TableView(
@@ -154,6 +169,12 @@ def table_view(one: Board, focus: int = 0) -> TableView:
         redo_id=one.redo.id if one.redo else 0,
         redo=one.redo.what if one.redo else "",
         focus=focus or _usual_focus(one),
+        owner=one.owner,
+        mine=one.owner == who,
+        due=due_lines(one),
+        rest=rest_words(one, at),
+        pace=pace_words(one, at),
+        fourths=one.programme.rules.fourth_for_record,
         here_now=_here_now(one),
     )
 
@@ -268,6 +289,11 @@ def _order_row(one: Board, step: Step, place: int, new_round: bool) -> OrderRow:
         change=_change_words(step, ask=one.ask and up),
         rack=one.now.racks.get((turn.lifter.id, one.lift.id), ""),
         why=step.why,
+        marks=tuple(
+            word
+            for word, on in (("record", turn.attempt.record), ("retake", bool(turn.attempt.retake)))
+            if on
+        ),
     )
 
 
@@ -314,8 +340,14 @@ def _score_row(one: Board, lifter: Lifter) -> ScoreRow:
         lifter=lifter.name,
         body_weight="" if lifter.body_weight is None else show_mass(lifter.body_weight),
         rack=one.now.racks.get((lifter.id, one.lift.id), ""),
-        cells=tuple(_cell(attempts, number, one.lift.step) for number in ROUNDS if number in attempts),
+        cells=tuple(_cell(attempts, number, one.lift.step) for number in sorted(attempts)),
         best="" if best is None else show_mass(best),
+        lifter_id=lifter.id,
+        withdrawn=lifter.withdrawn,
+        may_have_fourth=one.programme.rules.fourth_for_record
+        and 4 not in attempts
+        and 3 in attempts
+        and attempts[3].result is not Result.OPEN,
     )
 
 
