@@ -38,21 +38,40 @@ def suffix_sums(kit: Kit) -> list[Sums]:
     sums = [Sums(zero, zero, zero)]
     largest, listed = max(kit.shares, default=0), 0
     for kind in reversed(range(kit.kinds)):
-        after = sums[-1]
-        pieces = np.arange(min(kit.stock[kind], largest // kit.mass[kind]) + 1)[:, None]
-        mass = (after.mass + pieces * kit.mass[kind]).ravel()
-        kept = mass <= largest
-        mass = mass[kept]
-        listed += len(mass)
-        if listed > MOST_SUMS:
-            raise bad_request("plates", "These plates make more different weights than can be searched.")
-        order = np.argsort(mass, kind="stable")
-        mass = mass[order]
-        first = np.flatnonzero(np.r_[True, mass[1:] != mass[:-1]])
-        fewest = (after.fewest + pieces).ravel()[kept][order]
-        thin = (after.thinnest + pieces * kit.thickness[kind]).ravel()[kept][order]
-        sums.append(Sums(mass[first], np.minimum.reduceat(fewest, first), np.minimum.reduceat(thin, first)))
+        here = sums[-1]
+        for pieces in _bundles(min(kit.stock[kind], largest // kit.mass[kind])):
+            here = _with_bundle(kit, here, kind, pieces, largest)
+            if listed + len(here.mass) > MOST_SUMS:
+                raise bad_request("plates", "These plates make more different weights than can be searched.")
+        listed += len(here.mass)
+        sums.append(here)
     return sums[::-1]
+
+
+def _bundles(count: int) -> list[int]:
+    """1, 2, 4, … and what is left: bundles that make every number of pieces up to the count."""
+    bundles, size = [], 1
+    while size <= count:
+        bundles.append(size)
+        count -= size
+        size *= 2
+    return [*bundles, count] if count else bundles
+
+
+def _with_bundle(kit: Kit, sums: Sums, kind: int, pieces: int, largest: int) -> Sums:
+    """The sums with and without a bundle of one kind, the better of each mass."""
+    mass = np.concatenate([sums.mass, sums.mass + pieces * kit.mass[kind]])
+    fewest = np.concatenate([sums.fewest, sums.fewest + pieces])
+    thinnest = np.concatenate([sums.thinnest, sums.thinnest + pieces * kit.thickness[kind]])
+    order = np.argsort(mass, kind="stable")
+    order = order[: np.searchsorted(mass, largest, side="right", sorter=order)]
+    mass = mass[order]
+    first = np.flatnonzero(np.r_[True, mass[1:] != mass[:-1]])
+    return Sums(
+        mass[first],
+        np.minimum.reduceat(fewest[order], first),
+        np.minimum.reduceat(thinnest[order], first),
+    )
 
 
 def count_vectors(kit: Kit, extra_plates: int, watch: Watch) -> dict[int, Ints]:
@@ -106,6 +125,8 @@ def _fill(kit: Kit, sums: list[Sums], shares: Ints, most: Ints, watch: Watch) ->
             kept = np.flatnonzero(made)
             if len(kept):
                 parts.append((kept, np.full(len(kept), pieces), new_rest[kept]))
+        if not parts:  # nothing keeps to both the plates and the room
+            return np.zeros(0, np.int64), np.zeros((0, kit.kinds), np.int64)
         kept, pieces_put, rest = (np.concatenate(column) for column in zip(*parts, strict=True))
         watch.check()
         watch.room(len(kept) * kit.kinds * 32)

@@ -21,7 +21,7 @@ from app.planning.prices import Numbers, Prices, make_prices
 from app.planning.refusal import bad_request
 from app.planning.request import Measure, PlanRequest
 from app.planning.smaller import Alphabet
-from app.planning.watch import TooLarge, Watch
+from app.planning.watch import OutOfTime, TooLarge, Watch
 from app.planning.weights import refuse_weight, shares
 
 
@@ -135,7 +135,7 @@ def _list_vectors(kit: Kit, request: PlanRequest, watch: Watch) -> tuple[dict[in
     for extra in range(request.extra_plates, -1, -1):
         try:
             return count_vectors(kit, extra, watch), extra == request.extra_plates
-        except TooLarge:
+        except (TooLarge, OutOfTime):
             if request.comfort:
                 because = "There are too many stacks to compare their comfort; allow fewer extra plates."
                 raise bad_request("extra_plates", because) from None

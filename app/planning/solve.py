@@ -30,7 +30,7 @@ def plan(request: PlanRequest, budget: Budget | None = None, departure: Departur
     """
     budget = budget or Budget()
     watch = Watch(budget)
-    problem = prepared(request, watch)
+    problem = prepare(request, watch)
     if departure is None:
         return as_plan(problem, _solve(problem, budget, watch))
     chart = as_plan(problem, by_chart(problem))
@@ -44,16 +44,8 @@ def plan(request: PlanRequest, budget: Budget | None = None, departure: Departur
 
 def chart_plan(request: PlanRequest) -> Plan:
     """The chart's stacks, at once: right, though not the least work. For a crew that must not wait."""
-    problem = prepared(request, Watch(Budget()))
+    problem = prepare(request, Watch(Budget()))
     return as_plan(problem, by_chart(problem))
-
-
-def prepared(request: PlanRequest, watch: Watch) -> Problem:
-    """The problem of a request, within the budget."""
-    try:
-        return prepare(request, watch)
-    except OutOfTime:
-        return prepare(replace(request, extra_plates=0), Watch(Budget()))
 
 
 def as_plan(problem: Problem, solution: Solution) -> Plan:

@@ -66,6 +66,19 @@ def test_plates_that_make_the_weight_but_do_not_fit_are_refused_as_no_room() -> 
     assert (error["code"], error["below"], error["above"]) == ("no-room", "80", None)
 
 
+def test_where_the_fewest_plates_are_too_thick_one_more_plate_is_the_fewest() -> None:
+    """25 + 5 take 47 mm of the 40; 25 + 2.5 + 2.5 take 37. Found by the nightly run as a crash."""
+    plates = [
+        {"face": 25, "count": 1, "thickness_mm": 27},
+        {"face": 5, "count": 1, "thickness_mm": 20},
+        {"face": 2.5, "count": 2, "thickness_mm": 5},
+    ]
+    belt = {"mass": 0, "ends": 1, "usable_mm": 40}
+    document, good = ask(implement=belt, collar=None, plates=plates, targets=[30], extra_plates=0)
+    assert good
+    assert document["changes"][0]["stack"] == ["25", "2.5", "2.5"]
+
+
 def test_no_weights_have_an_empty_answer() -> None:
     document, good = ask(targets=[])
     assert good
