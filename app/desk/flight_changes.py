@@ -13,7 +13,7 @@ from app.store.picture import Picture, get
 from app.store.tables import AttemptRow, FlightRow, LifterRow
 
 NEW = "new"
-LONG_PAST = timedelta(hours=6)  # a time that has passed by more than this is meant for tomorrow
+LONG_PAST = timedelta(hours=6)  # a time that has passed by more than this is meant for the next day
 
 
 def move_lifter(desk: Desk, platform_id: int, lifter_id: int, from_flight: int, to: str, *, who: str) -> str:
@@ -117,10 +117,9 @@ def read_start(text: str, now: datetime) -> datetime | None:
         raise NotAllowedNow(
             f"Start: “{text}” is not a time. Type it like 09:30, or 2026-03-08 09:30 for another day."
         ) from None
-    start = datetime.combine(on, at).astimezone()
-    if not day and here - start > LONG_PAST:
-        start = datetime.combine(on + timedelta(days=1), at).astimezone()
-    return start.astimezone(UTC)
+    days = [on] if day else [on + timedelta(days=step) for step in (-1, 0, 1)]
+    starts = [datetime.combine(one, at).astimezone(UTC) for one in days]
+    return next((start for start in starts if now - start <= LONG_PAST), starts[-1])
 
 
 def show_start(start: datetime | None, now: datetime) -> str:

@@ -14,7 +14,7 @@ from itertools import groupby
 from typing import Generic, TypeVar
 
 from app.loading.chart import loadable
-from app.planning import PlanRequest, plan
+from app.planning import Budget, Departure, PlanRequest, plan
 
 Cost = TypeVar("Cost")
 Flights = tuple[tuple[int, ...], ...]
@@ -48,6 +48,9 @@ class Handled:
     mass: Fraction
     left_out: int = 0  # openers that the stock cannot make
 
+    def __add__(self, other: Handled) -> Handled:
+        return Handled(self.plates + other.plates, self.mass + other.mass, self.left_out + other.left_out)
+
 
 def by_opener(entrants: Sequence[Entrant], most: int) -> Flights:
     """The fewest flights of at most ``most``, sizes apart by at most one, lightest openers first."""
@@ -80,36 +83,30 @@ def propose(
     entrants: Sequence[Entrant],
     limits: Sequence[Fraction],
     most: int,
-    cost: Callable[[Sequence[Sequence[Fraction]]], Cost],
+    cost: Callable[[Flights], Cost],
 ) -> tuple[Proposal[Cost], ...]:
-    """Both proposals; ``cost`` is asked with the openers of each flight, lightest first."""
-    openers = {one.lifter_id: one.opener for one in entrants}
-
-    def priced(name: str, flights: Flights) -> Proposal[Cost]:
-        rounds = [
-            sorted(weight for weight in (openers[one] for one in flight) if weight is not None)
-            for flight in flights
-        ]
-        return Proposal(name, flights, cost(rounds))
-
-    proposals = [priced("By opener", by_opener(entrants, most))]
+    """Both proposals (by class only where there are limits), each with what it costs."""
+    made = {"By opener": by_opener(entrants, most)}
     if limits:
-        proposals.append(priced("By body-weight class", by_class(entrants, limits, most)))
-    return tuple(proposals)
+        made["By body-weight class"] = by_class(entrants, limits, most)
+    return tuple(Proposal(name, flights, cost(flights)) for name, flights in made.items())
 
 
-def openers_cost(request: PlanRequest) -> Callable[[Sequence[Sequence[Fraction]]], Handled]:
+def openers_cost(
+    request: PlanRequest, budget: Budget | None = None, departure: Departure | None = None
+) -> Callable[[Sequence[Sequence[Fraction]]], Handled]:
     """The cost of the openers' rounds by a plan with this equipment, these loading rules and this measure.
 
-    Each flight starts with an empty bar, so that proposals of several flights compare alike.
+    Each flight starts with an empty bar, so that proposals of several flights compare alike, and is planned
+    within the budget.
     """
 
     def cost(rounds: Sequence[Sequence[Fraction]]) -> Handled:
         plates, mass, left_out = 0, Fraction(0), 0
         for one in rounds:
-            targets = tuple(weight for weight in one if loadable(request.equipment, weight))
+            targets = tuple(weight for weight in sorted(one) if loadable(request.equipment, weight))
             left_out += len(one) - len(targets)
-            total = plan(replace(request, targets=targets, start=())).total
+            total = plan(replace(request, targets=targets, start=()), budget, departure).total
             plates, mass = plates + total.plates, mass + total.mass
         ends = request.equipment.implement.ends
         return Handled(plates * ends, mass * ends, left_out)

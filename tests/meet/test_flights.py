@@ -97,7 +97,10 @@ def test_each_proposal_carries_the_cost_it_was_asked_for() -> None:
         entrant(3, "110", "90"),
         entrant(4, "210", "91"),
     ]
-    spreads = propose(field, LIMITS, 2, lambda rounds: sum(one[-1] - one[0] for one in rounds))
+    openers = {one.lifter_id: one.opener or Fraction(0) for one in field}
+    spreads = propose(
+        field, LIMITS, 2, lambda flights: sum(openers[one[-1]] - openers[one[0]] for one in flights)
+    )
     assert [(one.name, one.flights, one.cost) for one in spreads] == [
         ("By opener", ((1, 3), (2, 4)), Fraction(20)),
         ("By body-weight class", ((1, 2), (3, 4)), Fraction(200)),
