@@ -139,9 +139,13 @@ def _list_vectors(kit: Kit, request: PlanRequest, watch: Watch) -> tuple[dict[in
             if request.comfort:
                 because = "There are too many stacks to compare their comfort; allow fewer extra plates."
                 raise bad_request("extra_plates", because) from None
-    if kit.room is not None:
-        raise bad_request("plates", "There are too many ways to make these weights within the room.")
-    return one_vector(kit), False
+    if kit.room is None:
+        return one_vector(kit), False
+    try:  # the fewest plates that also fit are only known from listing; the memory still bounds it
+        return count_vectors(kit, 0, watch.without_clock()), False
+    except TooLarge:
+        because = "There are too many ways to make these weights within the room."
+        raise bad_request("plates", because) from None
 
 
 def _chart_counts(kit: Kit, charts: list[Stack | None]) -> dict[int, Ints]:
