@@ -226,10 +226,20 @@ CHOICES: dict[str, dict[str, str]] = {
 }
 
 
-def save_lifts(desk: Desk, platform_id: int, wishes: Sequence[LiftWish], *, who: str) -> None:
-    """Which implement and step each lift has, and what its plan shall keep small."""
+def lifts_seen(now: Picture) -> str:
+    """Names the settings of the lifts as a page showed them."""
+    lifts = [(lift, sorted(now.loading[lift.id].items())) for _, _, p in now.sessions for lift in p.lifts]
+    return hashlib.sha256(repr(lifts).encode()).hexdigest()[:16]
+
+
+def save_lifts(
+    desk: Desk, platform_id: int, wishes: Sequence[LiftWish], *, who: str, seen: str | None = None
+) -> None:
+    """Which implement and step each lift has, and what its plan shall keep small. ``seen``: as the page was."""
     with platform_entry(desk, platform_id, who) as work:
         now = work.picture()
+        if seen is not None and seen != lifts_seen(now):
+            raise SomebodyWasFirst("Somebody changed the lifts since this page was made. Look, and save again.")
         tools = {str(tool.id): tool.id for tool in now.tools}
         lift_ids = {lift.id for _, _, p in now.sessions for lift in p.lifts}
         wrong: list[str] = []

@@ -84,34 +84,38 @@ def roster_entries(now: Picture) -> list[Entry]:
                 if (lifter.id, lift.id) in now.racks
             }
             flight = flights[lifter.flight_id]
-            entries.append(Entry(lifter.name, lifter.lot, flight, lifter.body_weight, openers, racks))
+            entries.append(
+                Entry(lifter.name, lifter.lot, flight, lifter.body_weight, openers, racks, now.platform)
+            )
     return entries
 
 
 class _Sessions:
-    """Which session a flight belongs to, and what its lifts are loaded with."""
+    """Which session a lifter lifts in, and what its lifts are loaded with."""
 
     def __init__(self, seen: Sequence[Picture]) -> None:
         self.lifts: dict[int, dict[str, tuple[Equipment, Fraction, str, int]]] = {}
-        self.of_flight: dict[str, int] = {}
+        self.platform: dict[int, str] = {}
+        self.flights: dict[int, set[str]] = {}
         for now in seen:
             for session_id, _, programme in now.sessions:
                 self.lifts[session_id] = {
                     lift.name: (now.equipment(lift.id), lift.step, now.unit, lift.id)
                     for lift in programme.lifts
                 }
-                self.of_flight |= {flight.name.casefold(): session_id for flight in programme.flights}
+                self.platform[session_id] = now.platform.casefold()
+                self.flights[session_id] = {flight.name.casefold() for flight in programme.flights}
 
-    def of(self, flight: str, lifts: Sequence[str]) -> int | None:
-        """The session of a flight; of a new flight the only one that has all these lifts. None: doubtful."""
-        known = self.of_flight.get(flight.casefold())
-        if known is not None:
-            return known
-        fitting = [number for number, have in self.lifts.items() if all(lift in have for lift in lifts)]
+    def of(self, platform: str, flight: str, lifts: Sequence[str]) -> int | None:
+        """The only session that it can be: of that platform if one is named, with that flight, with all these
+        lifts. None: there is none, or more than one."""
+        here = [n for n, name in self.platform.items() if not platform or name == platform.casefold()]
+        known = [n for n in here if flight.casefold() in self.flights[n]]
+        fitting = [n for n in known or here if known or all(lift in self.lifts[n] for lift in lifts)]
         return fitting[0] if len(fitting) == 1 else None
 
-    def check_opener(self, flight: str, lift: str, weight: Fraction) -> Refused | None:
-        session_id = self.of(flight, [lift])
+    def check_opener(self, platform: str, flight: str, lift: str, weight: Fraction) -> Refused | None:
+        session_id = self.of(platform, flight, [lift])
         if session_id is None:
             return None  # said once for the line, not once for each lift
         if lift not in self.lifts[session_id]:
@@ -133,10 +137,10 @@ class _Lines:
         self.by_lot = {row.lot: row for row in rows}
 
     def take(self, entry: Entry) -> list[str]:
-        session_id = self.sessions.of(entry.flight, list(entry.openers))
+        session_id = self.sessions.of(entry.platform, entry.flight, list(entry.openers))
         if session_id is None:
             return [
-                f"flight “{entry.flight}” is new and it is not clear in which session it lifts. Give an opener."
+                f"it is not clear where flight “{entry.flight}” lifts. Add a column “platform” that names it."
             ]
         row = self.by_lot.get(entry.lot)
         if row is not None and row.name != entry.name:

@@ -1,7 +1,8 @@
 """The roster as a CSV file: read strictly, every wrong line named, written back the same way.
 
-Columns: ``name``, ``lot``, ``flight`` are needed; ``body weight`` and, for each lift, ``<lift> opener`` and
-``<lift> rack`` may follow in any order. Comma, semicolon or tab; a decimal comma is read where the columns
+Columns: ``name``, ``lot``, ``flight`` are needed; ``platform``, ``body weight`` and, for each lift,
+``<lift> opener`` and ``<lift> rack`` may follow in any order. The platform is only needed where flight and
+lifts do not tell where somebody lifts. Comma, semicolon or tab; a decimal comma is read where the columns
 are not separated by commas.
 """
 
@@ -31,6 +32,7 @@ class Entry:
     body_weight: Fraction | None = None
     openers: dict[str, Fraction] = field(default_factory=dict)
     racks: dict[str, str] = field(default_factory=dict)
+    platform: str = ""
     line: int = field(default=0, compare=False)
 
 
@@ -50,8 +52,8 @@ class Reading:
     wrong: tuple[WrongLine, ...]
 
 
-CheckOpener = Callable[[str, str, Fraction], Refused | None]
-"""(flight, lift, weight) → why this opener cannot stand, or None."""
+CheckOpener = Callable[[str, str, str, Fraction], Refused | None]
+"""(platform, flight, lift, weight) → why this opener cannot stand, or None."""
 
 
 def read_roster(text: str, lifts: Sequence[str], check_opener: CheckOpener) -> Reading:
@@ -89,10 +91,10 @@ def write_roster(entries: Sequence[Entry], lifts: Sequence[str]) -> str:
     """The roster in the form that :func:`read_roster` takes back unchanged."""
     out = io.StringIO()
     writer = csv.writer(out, lineterminator="\r\n")
-    writer.writerow(["name", "lot", "flight", "body weight", *_lift_columns(lifts)])
+    writer.writerow(["name", "lot", "flight", "platform", "body weight", *_lift_columns(lifts)])
     for entry in entries:
         weight = "" if entry.body_weight is None else show_mass(entry.body_weight)
-        row = [_plain(entry.name), entry.lot, _plain(entry.flight), weight]
+        row = [_plain(entry.name), entry.lot, _plain(entry.flight), _plain(entry.platform), weight]
         for lift in lifts:
             opener = entry.openers.get(lift)
             row += ["" if opener is None else show_mass(opener), _plain(entry.racks.get(lift, ""))]
@@ -135,7 +137,7 @@ def _rows(text: str) -> list[tuple[int, list[str]]]:
 
 
 def _read_header(header: Sequence[str], lifts: Sequence[str], columns: dict[str, int]) -> list[WrongLine]:
-    known = {name.casefold(): name for name in (*NEEDED, "body weight", *_lift_columns(lifts))}
+    known = {name.casefold(): name for name in (*NEEDED, "platform", "body weight", *_lift_columns(lifts))}
     wrong: list[WrongLine] = []
     for place, title in enumerate(header):
         name = known.get(" ".join(title.split()).casefold())
@@ -173,11 +175,13 @@ class _Line:
             self.complain(f"{len(self.cells)} fields, but there are {len(self.columns)} columns.")
             return None
         name, flight = self._text("name"), self._text("flight")
+        platform = _bare(self.cell("platform"))
+        self._check_length("platform", platform)
         lot = self._lot()
         body_weight = self._mass("body weight", "body weight")
         openers, racks = {}, {}
         for lift in self.lifts:
-            opener = self._opener(flight, lift)
+            opener = self._opener(platform, flight, lift)
             if opener is not None:
                 openers[lift] = opener
             rack = _bare(self.cell(f"{lift} rack"))
@@ -186,7 +190,7 @@ class _Line:
                 racks[lift] = rack
         if self.wrong or lot is None:
             return None
-        return Entry(name, lot, flight, body_weight, openers, racks, self.number)
+        return Entry(name, lot, flight, body_weight, openers, racks, platform, self.number)
 
     def _text(self, name: str) -> str:
         text = _bare(self.cell(name))
@@ -216,11 +220,11 @@ class _Line:
             return None
         return read.weight
 
-    def _opener(self, flight: str, lift: str) -> Fraction | None:
+    def _opener(self, platform: str, flight: str, lift: str) -> Fraction | None:
         weight = self._mass(f"{lift} opener", f"{lift} opener")
         if weight is None:
             return None
-        refused = self.check_opener(flight, lift, weight)
+        refused = self.check_opener(platform, flight, lift, weight)
         if refused is not None:
             self.complain(f"{lift} opener: {sentence(refused)}")
             return None

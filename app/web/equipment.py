@@ -13,7 +13,7 @@ from starlette.responses import Response
 
 from app.desk import equipment
 from app.desk.entry import Desk
-from app.desk.equipment import CHOICES, LiftWish, stock_seen
+from app.desk.equipment import CHOICES, LiftWish, lifts_seen, stock_seen
 from app.desk.errors import DeskError
 from app.loading.mass import show_mass
 from app.store.engine import reading
@@ -41,6 +41,7 @@ class EquipmentView:
     platform: str
     unit: str
     seen: str
+    lifts_seen: str
     plates: Rows
     tools: Rows
     lifts: Rows
@@ -90,6 +91,7 @@ def _view(now: Picture, typed: Mapping[str, Rows]) -> EquipmentView:
         platform=now.platform,
         unit=now.unit,
         seen=stock_seen(now.stock, now.tools),
+        lifts_seen=lifts_seen(now),
         plates=typed.get("plates") or [*map(_plate_row, now.stock), *spare_plates],
         tools=typed.get("tools") or [*map(_tool_row, now.tools), *spare_tool],
         lifts=_over(_lift_rows(now), typed.get("lifts", [])),
@@ -186,7 +188,9 @@ async def save_tools(request: Request, platform_id: int, desk: DeskDep, official
 async def save_lifts(request: Request, platform_id: int, desk: DeskDep, official: OfficialDep) -> Response:
     """What each lift is loaded with, and how."""
     columns = tuple(one.name for one in fields(LiftWish))
-    rows = _typed_rows(await request.form(), columns)
+    form = await request.form()
+    rows = _typed_rows(form, columns)
+    seen = str(form["seen"]) if "seen" in form else None
 
     def save() -> None:
         wishes = [
@@ -195,7 +199,7 @@ async def save_lifts(request: Request, platform_id: int, desk: DeskDep, official
             )
             for row in rows
         ]
-        equipment.save_lifts(desk, platform_id, wishes, who=who(official, ROLE))
+        equipment.save_lifts(desk, platform_id, wishes, who=who(official, ROLE), seen=seen)
 
     saved = "The settings of the lifts are saved."
     return await _save(request, desk, platform_id, official, save, {"lifts": rows}, saved)

@@ -62,7 +62,8 @@ def _render(
         show=show_mass,
         has_platform=bool(seen),
         header=",".join(
-            ["name", "lot", "flight", "body weight"] + [f"{x} {y}" for x in lifts for y in ("opener", "rack")]
+            ["name", "lot", "flight", "platform", "body weight"]
+            + [f"{lift} {what}" for lift in lifts for what in ("opener", "rack")]
         ),
         said=said,
         refused=refused,

@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 
 from app.desk.bar import bar_carries
-from app.desk.equipment import LiftWish, save_lifts, save_plates, save_tools, stock_seen
+from app.desk.equipment import LiftWish, lifts_seen, save_lifts, save_plates, save_tools, stock_seen
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
 from app.loading.equipment import Collar, Implement, Plate
 from app.store.picture import PlateStock, Tool
@@ -322,3 +322,13 @@ def test_new_settings_leave_the_change_in_hand_and_plan_the_rest_anew(hall: Hall
     assert hall.picture().bar == bar
     assert hall.board().ask is False
     check_board(hall.board())
+
+
+def test_settings_of_lifts_that_somebody_changed_meanwhile_are_not_overwritten(hall: Hall) -> None:
+    seen = lifts_seen(hall.picture())
+    wishes = [LiftWish(hall.lift_id("Squat"), str(hall.picture().tools[0].id), "5", "1", "mass", "total")]
+    save_lifts(hall.desk, hall.platform_id, wishes, who=OLGA, seen=seen)
+    with refused(
+        hall, SomebodyWasFirst, "Somebody changed the lifts since this page was made. Look, and save again."
+    ):
+        save_lifts(hall.desk, hall.platform_id, wishes, who=OLGA, seen=seen)

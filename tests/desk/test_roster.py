@@ -6,6 +6,7 @@ import pytest
 
 from app.desk.errors import NotAllowedNow, WrongRoster
 from app.desk.roster import export_roster, import_roster
+from app.desk.setup import add_platform
 from app.meet.model import Attempt, Result
 from app.store.picture import NotFound
 from tests.cast import (
@@ -72,13 +73,13 @@ def test_the_same_roster_again_changes_nothing(hall: Hall) -> None:
 def test_what_is_downloaded_can_be_uploaded_and_changes_nothing(hall: Hall) -> None:
     text = export_roster(hall.desk, hall.meet_id)
     assert text.replace("\r\n", "\n") == (
-        "name,lot,flight,body weight,Squat opener,Squat rack,Bench press opener,Bench press rack,"
+        "name,lot,flight,platform,body weight,Squat opener,Squat rack,Bench press opener,Bench press rack,"
         "Deadlift opener,Deadlift rack\n"
-        "Bo Carver,1,Flight A,74.2,110,11,70,,130,\n"
-        "Cleo Dahl,2,Flight A,68,110,10,65,,140,\n"
-        "Ada Brook,3,Flight A,61.5,100,9,60,,120,\n"
-        "Dov Ekman,4,Flight B,93.1,150,14,100,,180,\n"
-        "Etta Frost,5,Flight B,88.4,160,13,110,,190,\n"
+        "Bo Carver,1,Flight A,Hall,74.2,110,11,70,,130,\n"
+        "Cleo Dahl,2,Flight A,Hall,68,110,10,65,,140,\n"
+        "Ada Brook,3,Flight A,Hall,61.5,100,9,60,,120,\n"
+        "Dov Ekman,4,Flight B,Hall,93.1,150,14,100,,180,\n"
+        "Etta Frost,5,Flight B,Hall,88.4,160,13,110,,190,\n"
     )
     with changes(hall, {}):
         import_roster(hall.desk, hall.meet_id, text, who=OLGA)
@@ -189,7 +190,7 @@ def test_a_new_flight_without_openers_is_doubtful_where_there_are_two_sessions(
 ) -> None:
     hall, _ = halls
     assert wrong(hall, "Fay Green,6,Flight D", header="name,lot,flight") == [
-        (2, "flight “Flight D” is new and it is not clear in which session it lifts. Give an opener.")
+        (2, "it is not clear where flight “Flight D” lifts. Add a column “platform” that names it.")
     ]
 
 
@@ -216,3 +217,14 @@ def test_names_as_people_have_them_survive_the_way_through_the_database(hall: Ha
     assert [hall.lifter(name).lot for name in names] == [10, 11, 12, 13]
     with changes(hall, {}):
         import_roster(hall.desk, hall.meet_id, export_roster(hall.desk, hall.meet_id), who=OLGA)
+
+
+def test_a_platform_named_in_the_roster_tells_where_a_new_flight_lifts(hall: Hall) -> None:
+    """Two platforms that lift the same lifts: only the name of the platform can tell them apart."""
+    second = add_platform(hall.desk, hall.meet_id, "Yard", "bar-kg", who=OLGA)
+    header = "name,lot,flight,platform,Squat opener"
+    text = f"{header}\nFay Green,6,Flight A,Yard,90\nGus Hill,7,Flight D,Hall,95\n"
+    import_roster(hall.desk, hall.meet_id, text, who=OLGA)
+    there = Hall(hall.desk, hall.meet_id, second)
+    assert there.lifter("Fay Green").flight_id == there.flight_id("Flight A") != hall.flight_id("Flight A")
+    assert hall.lifter("Gus Hill").flight_id == hall.flight_id("Flight D")

@@ -15,7 +15,7 @@ LIFTS = ("Squat", "Bench press")
 HEADER = "name,lot,flight,body weight,Squat opener,Squat rack,Bench press opener,Bench press rack"
 
 
-def takes_all(_flight: str, _lift: str, _weight: Fraction) -> None:
+def takes_all(_platform: str, _flight: str, _lift: str, _weight: Fraction) -> None:
     """Every opener may stand."""
     return
 
@@ -113,7 +113,7 @@ def test_a_wrong_line_is_named_by_number_and_reason(line: str, because: str) -> 
 
 
 def test_an_opener_that_the_rules_refuse_is_told_with_what_would_be_right() -> None:
-    def refuses(flight: str, lift: str, weight: Fraction) -> Refused:
+    def refuses(_platform: str, flight: str, lift: str, weight: Fraction) -> Refused:
         return Refused(f"{flight}, {lift}: {weight} will not do.", Fraction(100), Fraction("102.5"))
 
     assert wrong("Ada,3,Flight A,60,101", check=refuses) == [
@@ -139,7 +139,7 @@ def test_everything_wrong_is_told_at_once_and_nothing_is_taken() -> None:
 
 
 def test_wrong_columns_are_told_all_at_once() -> None:
-    known = "name, lot, flight, body weight, Squat opener, Squat rack, Bench press opener, Bench press rack"
+    known = "name, lot, flight, platform, body weight, Squat opener, Squat rack, Bench press opener, Bench press rack"
     assert wrong("Ada,3,x,y", header="name,name,Curl opener,lot") == [
         (1, "column “name” stands twice."),
         (1, f"unknown column “Curl opener”. Known columns: {known}."),
@@ -168,7 +168,7 @@ def test_a_name_that_a_spreadsheet_would_run_is_written_harmlessly_and_read_back
     """CSV injection: a cell that begins with = + - @ is a formula to a spreadsheet (OWASP's advice)."""
     entry = Entry("=HYPERLINK(1)", 3, "-Flight A", None, {}, {"Squat": "+9"})
     text = write_roster([entry], LIFTS)
-    assert text.splitlines()[1] == "'=HYPERLINK(1),3,'-Flight A,,,'+9,,"
+    assert text.splitlines()[1] == "'=HYPERLINK(1),3,'-Flight A,,,,'+9,,"
     assert read(text).entries == (entry,)
 
 
