@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
+from collections import deque
 from dataclasses import dataclass, replace
 
 from app.desk.attempts import breaches_of, read_entry
 from app.desk.entry import Desk, Work
-from app.desk.planned import Situation, plan_for, situation, wish_of
+from app.desk.planned import Situation, plan_belts, situation, wish_of
 from app.desk.subject import Seen, Subject, find_subject
 from app.loading.change import HandList, hand_list
-from app.loading.equipment import Stack
 from app.meet.moment import Breach
 from app.meet.order import Turn
 from app.planning import Budget
@@ -61,12 +61,14 @@ def look_ahead(desk: Desk, platform_id: int, seen: Seen, text: str) -> Ahead:
 def _hands(then: Situation, subject: Subject, attempt_id: int, budget: Budget) -> HandList | None:
     """The change of this attempt in the plan that would be made."""
     turns = then.turns
-    made = plan_for(subject.now, then.lift_id, then.start, turns, budget)
+    made = plan_belts(subject.now, then.lift_id, then.starts, turns, budget)
     if made is None:
         return None
-    before: Stack = then.start or ()
+    access = wish_of(subject.now, then.lift_id).access
+    belts = deque(then.starts)
     for turn, change in zip(turns, made.plan.changes, strict=True):
+        before = belts.popleft()
+        belts.append(change.stack)
         if turn.attempt.id == attempt_id:
-            return hand_list(before, change.stack, wish_of(subject.now, then.lift_id).access)
-        before = change.stack
+            return hand_list(before or (), change.stack, access)
     return None

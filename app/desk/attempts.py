@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import replace
 from fractions import Fraction
 
@@ -14,9 +15,10 @@ from app.meet.check_declaration import check_declaration
 from app.meet.declare import Refused, read_weight, sentence
 from app.meet.model import RESULT_WORDS, Result
 from app.meet.moment import Breach
+from app.meet.order import Turn
 from app.meet.platform import Condition, lifted, overtaken, up_next
 from app.meet.ruled_order import ruled_turns
-from app.meet.rules import Default
+from app.meet.rules import Default, OrderSystem
 from app.store.picture import store_bar
 
 __all__ = ["Seen", "breaches_of", "declare", "judge", "read_entry"]
@@ -98,7 +100,10 @@ def _default(subject: Subject) -> Fraction:
             f"{subject.name}: type a weight. Not handed in, the attempt is forfeited: pass it then."
         )
     asked = replace(subject.attempt, result=Result.OPEN)
-    turns = ruled_turns(subject.lifter, (*subject.others, asked), subject.rules)
+    turns: Sequence[Turn] = ruled_turns(subject.lifter, (*subject.others, asked), subject.rules)
+    if subject.rules.order_system is OrderSystem.RISING and subject.attempt.result is Result.OPEN:
+        # The order knows how high the bar will be by then.
+        turns = subject.programme.order(subject.lifter.flight_id, asked.lift_id) or turns
     weight = next((turn.weight for turn in turns if turn.attempt.id == asked.id), None)
     if weight is None:
         raise NotAllowedNow(f"{subject.name}: type a weight. An opener has no default.")

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import deque
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
@@ -9,7 +10,7 @@ from fractions import Fraction
 from sqlmodel import select
 
 from app.desk.entry import Desk
-from app.desk.planned import must_ask, plan_for, wish_of
+from app.desk.planned import belts_of, must_ask, next_starts, plan_for, wish_of
 from app.desk.undo import UNDONE
 from app.desk.wish import Wish
 from app.loading.change import HandList, hand_list
@@ -108,7 +109,7 @@ def board(
     here = (now.flight_id, now.lift_id) == (flight.id, lift.id)
     access = wish_of(now, lift.id).access
     if here:
-        steps = tuple(_live_steps(now, order, equipment, access))
+        steps = tuple(_live_steps(now, order, equipment, access, lift.id))
     else:
         steps = tuple(_fresh_steps(now, order, lift, access, desk.budget))
     return Board(
@@ -123,7 +124,8 @@ def board(
         up=up_next(now.bar, order) if here else None,
         ask=here and must_ask(now.bar, order, equipment),
         no_opener=without_opener(
-            [lifter for lifter in programme.of_flight(flight.id) if not lifter.withdrawn], programme.of_lift(lift.id)
+            [lifter for lifter in programme.of_flight(flight.id) if not lifter.withdrawn],
+            programme.of_lift(lift.id),
         ),
         owner=owners.get(flight.id, ""),
         undo=undo,
@@ -153,20 +155,32 @@ Loads = dict[int, tuple[Fraction, Stack, str]]
 """By attempt: the weight a stack was planned for, the stack, and why it is not the chart's."""
 
 
-def _live_steps(now: Picture, order: Sequence[Turn], equipment: Equipment, access: Access) -> Iterator[Step]:
+def _live_steps(
+    now: Picture, order: Sequence[Turn], equipment: Equipment, access: Access, lift_id: int
+) -> Iterator[Step]:
     """The steps of the lift that is on: the change in hand first, then the stored plan, each from the one before."""
     stored = [] if now.plan is None else now.plan["steps"]
     loads: Loads = {
         step["attempt"]: (parse_mass(step["weight"]), to_stack(step["stack"]) or (), step.get("why", ""))
         for step in stored
     }
-    hand, up = now.bar.hand, up_next(now.bar, order)
-    if hand is None or up is None or must_ask(now.bar, order, equipment):
-        yield from _chain(order, loads, now.bar.carries, access)
+    hand, up, ask = now.bar.hand, up_next(now.bar, order), must_ask(now.bar, order, equipment)
+    belts = belts_of(now, lift_id)
+    starts = next_starts(now.bar, belts, ask=ask or up is None)
+    if hand is None or up is None or ask:
+        yield from _chain(order, loads, starts, access)
         return
     yield Step(up, hand.before, hand.stack, access, hand.why)
     rest = [turn for turn in order if turn.attempt.id != up.attempt.id]
-    yield from _chain(rest, loads, hand.stack, access)
+    ahead = now.bar.ahead
+    if (
+        ahead is not None
+        and rest
+        and (rest[0].attempt.id, rest[0].weight) == (ahead.attempt_id, ahead.weight)
+    ):
+        yield Step(rest[0], ahead.before, ahead.stack, access, ahead.why)
+        rest = rest[1:]
+    yield from _chain(rest, loads, starts, access)
 
 
 def _fresh_steps(
@@ -180,17 +194,21 @@ def _fresh_steps(
     if made is not None:
         for turn, change, reason in zip(turns, made.plan.changes, made.why, strict=True):
             loads[turn.attempt.id] = (turn.weight, change.stack, reason or "")
-    yield from _chain(order, loads, (), access)
+    yield from _chain(order, loads, ((),), access)
 
 
-def _chain(order: Sequence[Turn], loads: Loads, carries: Stack | None, access: Access) -> Iterator[Step]:
-    """Each turn from the stack of the one before; a stack planned for another weight is none."""
+def _chain(
+    order: Sequence[Turn], loads: Loads, starts: Sequence[Stack | None], access: Access
+) -> Iterator[Step]:
+    """Each turn from what its bar or belt carries; a stack planned for another weight is none."""
+    belts = deque(starts)
     for turn in order:
         weight, stack, why = loads.get(turn.attempt.id, (None, None, ""))
         if weight != turn.weight:
             stack, why = None, ""
-        yield Step(turn, carries, stack, access, why)
-        carries = stack if stack is not None else carries
+        before = belts.popleft()
+        yield Step(turn, before, stack, access, why)
+        belts.append(stack if stack is not None else before)
 
 
 @dataclass(frozen=True, slots=True)

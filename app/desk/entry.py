@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import time
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Sequence
 from contextlib import contextmanager
 from dataclasses import dataclass, field
 from datetime import datetime
@@ -14,12 +14,13 @@ from sqlmodel import Session, col, select
 from app.desk.hands_off import check_hands_off
 from app.desk.hub import Hub, platform_topic
 from app.desk.improve import Improver
+from app.desk.owned import check_owned
 from app.desk.settle import settle
 from app.planning import Budget
 from app.store.engine import writing
-from app.store.journal import Recorder
+from app.store.journal import Edit, Recorder
 from app.store.picture import Picture, get, key, picture
-from app.store.tables import JournalRow, PlatformRow
+from app.store.tables import JournalRow, PlateRow, PlatformRow
 
 Clock = Callable[[], datetime]
 
@@ -103,6 +104,8 @@ def _close(work: Work, recorder: Recorder, budget: Budget) -> list[Changed]:
     """Settle, journal, and count the revision up; does nothing at all when nothing was changed."""
     if not recorder.edits():
         return []
+    check_owned(work.session, work.meet_id, recorder.edits())
+    work.touched |= _stocks(work.session, recorder.edits())
     for platform_id in sorted(work.touched):
         settle(work.session, platform_id, budget)
     edits = recorder.edits()
@@ -113,13 +116,14 @@ def _close(work: Work, recorder: Recorder, budget: Budget) -> list[Changed]:
         row = get(work.session, PlatformRow, platform_id, "platform")
         row.revision += 1
         row.changed_at = work.now
-        revision = row.revision
+        if platform_id == work.platform_id:
+            revision = row.revision
         changed.append(Changed(platform_id, row.revision, row.plan is None or row.plan.get("proved", True)))
     work.session.add(
         JournalRow(
             meet_id=work.meet_id,
             platform_id=work.platform_id,
-            revision=revision if work.platform_id is not None else None,
+            revision=revision,
             at=work.now,
             who=work.who,
             what=work.what,
@@ -128,6 +132,16 @@ def _close(work: Work, recorder: Recorder, budget: Budget) -> list[Changed]:
         )
     )
     return changed
+
+
+def _stocks(session: Session, edits: Sequence[Edit]) -> set[int]:
+    """The platforms whose plates were changed: plates that are lent, or an undo of that, concern two."""
+    found: set[int] = set()
+    for edit in edits:
+        if edit["table"] == "plate":
+            gone = (edit["before"] or {}).get("platform_id")
+            found.add(gone if gone is not None else session.get_one(PlateRow, edit["id"]).platform_id)
+    return found
 
 
 def _publish(desk: Desk, changed: list[Changed]) -> None:

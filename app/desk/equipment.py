@@ -77,7 +77,7 @@ def save_plates(
 ) -> None:
     """The plates at the platform are these. A row with an empty face value is taken out."""
     with platform_entry(desk, platform_id, who) as work:
-        now = _unchanged(work, seen)
+        now = unchanged(work, seen)
         wanted, wrong = _read_plates(rows)
         if wrong:
             raise NotAllowedNow(" ".join(wrong))
@@ -91,14 +91,13 @@ def save_plates(
             plate = have.get(face) or PlateRow(platform_id=platform_id, face=face, count=0)
             _set(plate, values)
             work.session.add(plate)
-        _check_room(work)
-        _check_searchable(work)
+        check_room(work.picture())
+        check_searchable(work.picture())
         work.what = f"{now.platform}: plates changed"
 
 
-def _check_room(work: Work) -> None:
+def check_room(now: Picture) -> None:
     """Room that is limited can only be kept to when everything that takes it is measured."""
-    now = work.picture()
     wrong: list[str] = []
     for tool in now.tools:
         if tool.implement.usable_mm is None:
@@ -117,9 +116,8 @@ def _check_room(work: Work) -> None:
         raise NotAllowedNow(" ".join(wrong))
 
 
-def _check_searchable(work: Work) -> None:
+def check_searchable(now: Picture) -> None:
     """So many odd plates that not even the makeable weights can be listed are refused while they are typed."""
-    now = work.picture()
     try:
         for _, _, programme in now.sessions:
             for lift in programme.lifts:
@@ -164,7 +162,7 @@ def save_tools(
 ) -> None:
     """The bars and belts at the platform are these. A row with an empty name is taken out, if no lift uses it."""
     with platform_entry(desk, platform_id, who) as work:
-        now = _unchanged(work, seen)
+        now = unchanged(work, seen)
         query = select(ImplementRow).where(ImplementRow.platform_id == platform_id)
         have = {str(row.id): row for row in work.session.exec(query)}
         wrong: list[str] = []
@@ -188,7 +186,7 @@ def save_tools(
                 work.session.add(tool)
         if wrong:
             raise NotAllowedNow(" ".join(wrong))
-        _check_room(work)
+        check_room(work.picture())
         work.what = f"{now.platform}: bars and belts changed"
 
 
@@ -201,10 +199,20 @@ def _read_tool(form: Form) -> dict[str, object]:
         "name": " ".join(form.row["name"].split())[:80],
         "kind": kind,
         "mass": form.mass("mass", "mass", zero=kind == "belt"),
+        "pieces": _pieces(form),
         "usable_mm": form.mass("usable", "room for plates", needed=False),
         "collar_mass": collar,
         "collar_width_mm": form.mass("collar_width", "collar width", needed=False, zero=True),
     }
+
+
+def _pieces(form: Form) -> int:
+    """How many of it are in circulation; a form without the field means one."""
+    text = form.row.get("pieces", "").strip() or "1"
+    if text in ("1", "2", "3", "4", "5", "6"):
+        return int(text)
+    form.wrong.append(f"{form.label}: “{text}” in circulation is not a number from 1 to 6.")
+    return 1
 
 
 @dataclass(frozen=True, slots=True)
@@ -239,7 +247,9 @@ def save_lifts(
     with platform_entry(desk, platform_id, who) as work:
         now = work.picture()
         if seen is not None and seen != lifts_seen(now):
-            raise SomebodyWasFirst("Somebody changed the lifts since this page was made. Look, and save again.")
+            raise SomebodyWasFirst(
+                "Somebody changed the lifts since this page was made. Look, and save again."
+            )
         tools = {str(tool.id): tool.id for tool in now.tools}
         lift_ids = {lift.id for _, _, p in now.sessions for lift in p.lifts}
         wrong: list[str] = []
@@ -268,7 +278,8 @@ def save_lifts(
         work.what = f"{now.platform}: settings of the lifts changed"
 
 
-def _unchanged(work: Work, seen: str) -> Picture:
+def unchanged(work: Work, seen: str) -> Picture:
+    """The platform, if its equipment is still as the page showed it."""
     now = work.picture()
     if stock_seen(now.stock, now.tools) != seen:
         raise SomebodyWasFirst(

@@ -14,7 +14,7 @@ from app.desk.errors import NotAllowedNow
 from app.meet.model import Result
 from app.meet.platform import Condition
 from app.store.journal import Edit
-from app.store.tables import AttemptRow, LifterRow
+from app.store.tables import AttemptRow, LifterRow, PlatformRow
 
 
 def check_hands_off(session: Session, edits: Iterable[Edit]) -> None:
@@ -22,6 +22,8 @@ def check_hands_off(session: Session, edits: Iterable[Edit]) -> None:
     for edit in edits:
         before = edit["before"] or {}
         hand = before.get("hand")
+        if hand is None and "implement_id" in before:  # another bar may want the same stack, so the same hand
+            hand = session.get_one(PlatformRow, edit["id"]).hand
         if edit["table"] != "platform" or hand is None or before.get("condition") != Condition.LIFTING:
             continue
         attempt = session.get(AttemptRow, hand["attempt"])

@@ -16,7 +16,7 @@ from threading import Lock
 from sqlalchemy import Engine
 
 from app.desk.hub import Hub, platform_topic
-from app.desk.planned import plan_for, situation, stored_plan
+from app.desk.planned import plan_belts, situation, stored_plan
 from app.planning import Budget
 from app.store.engine import reading, writing
 from app.store.picture import get, picture
@@ -50,7 +50,7 @@ class Improver:
             return False
         turns = here.turns
         budget = replace(self._budget, monotonic=self._watched(platform_id, revision))
-        made = plan_for(now, here.lift_id, here.start, turns, budget)
+        made = plan_belts(now, here.lift_id, here.starts, turns, budget)
         if made is None or not self._current(platform_id, revision):
             return False
         with writing(self._engine) as session:

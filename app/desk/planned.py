@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import logging
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import partial
 from typing import Any
 
@@ -42,15 +42,38 @@ class Situation:
 
     @property
     def turns(self) -> tuple[Turn, ...]:
-        """What is still to be planned: the attempt in hand is not, its stack is settled."""
-        held = self.bar.hand.attempt_id if self.bar.hand and not self.ask else None
+        """What is still to be planned: the attempts whose instruction is out are not, their stacks are settled."""
+        out = (self.bar.hand, self.bar.ahead) if not self.ask else ()
+        held = {hand.attempt_id for hand in out if hand is not None}
         turns = horizon(self.programme, self.flight_id, self.lift_id, partial(loadable, self.equipment))
-        return tuple(turn for turn in turns if turn.attempt.id != held)
+        return tuple(turn for turn in turns if turn.attempt.id not in held)
 
     @property
-    def start(self) -> Stack | None:
-        """From which stack the plan starts: that of the change in hand, else what is on the bar now."""
-        return self.bar.hand.stack if self.bar.hand and not self.ask else self.bar.carries
+    def belts(self) -> int:
+        """How many of the implement are in circulation: the next is made up while a lifter has the other."""
+        return belts_of(self.now, self.lift_id)
+
+    @property
+    def starts(self) -> tuple[Stack | None, ...]:
+        """What each belt in circulation carries when its next turn comes, the one that is used first in front."""
+        return next_starts(self.bar, self.belts, ask=self.ask)
+
+
+def belts_of(now: Picture, lift_id: int) -> int:
+    """How many belts a lift is loaded on in turn; a bar is always one."""
+    tool = now.tool(now.programme(lift_id).lift(lift_id).implement_id)
+    return min(tool.pieces, 2) if tool.implement.ends == 1 else 1
+
+
+def next_starts(bar: Bar, belts: int, *, ask: bool) -> tuple[Stack | None, ...]:
+    """The stacks from which the turns to come are made up, in turn: one for each belt in circulation."""
+    if bar.hand is None or ask:
+        return (bar.carries, bar.spare)[:belts]
+    if belts == 1:
+        return (bar.hand.stack,)
+    if bar.ahead is not None:
+        return bar.hand.stack, bar.ahead.stack
+    return bar.spare, bar.hand.stack
 
 
 def situation(now: Picture, bar: Bar) -> Situation | None:
@@ -77,8 +100,52 @@ class Made:
     why: tuple[str | None, ...]
 
 
+def plan_belts(
+    now: Picture, lift_id: int, starts: Sequence[Stack | None], turns: Sequence[Turn], budget: Budget
+) -> Made | None:
+    """The plan where the turns take the belts one after another: each belt's turns are planned for themselves.
+
+    With one bar or belt that is :func:`plan_for`. With two, each chain is best for itself; that both together
+    must do with one stock is looked to when the next load is made up.
+    """
+    parts = [
+        plan_for(now, lift_id, start, turns[at :: len(starts)], budget) for at, start in enumerate(starts)
+    ]
+    return parts[0] if len(starts) == 1 else _woven(parts, len(turns))
+
+
+def _woven(parts: Sequence[Made | None], count: int) -> Made | None:
+    """The belts' plans as one list in the order of the turns."""
+    made = [part for part in parts if part is not None]
+    if len(made) < min(len(parts), count) or not made:
+        return None
+    changes = tuple(_belt(made, at).plan.changes[at // len(parts)] for at in range(count))
+    reasons = tuple(_belt(made, at).why[at // len(parts)] for at in range(count))
+    proved = all(part.plan.proof == "optimal" for part in made)
+    worst = next((part.plan for part in made if part.plan.proof != "optimal"), made[0].plan)
+    return Made(replace(made[0].plan if proved else worst, changes=changes), reasons)
+
+
+def _belt(parts: Sequence[Made], at: int) -> Made:
+    """The plan of the belt whose turn it is."""
+    return parts[at % len(parts)]
+
+
+def less(equipment: Equipment, stack: Stack) -> Equipment:
+    """The equipment without the plates of a stack that hangs on a lifter."""
+    plates = tuple(
+        replace(plate, count=max(0, plate.count - stack.count(plate.face))) for plate in equipment.plates
+    )
+    return replace(equipment, plates=plates)
+
+
 def plan_for(
-    now: Picture, lift_id: int, start: Stack | None, turns: Sequence[Turn], budget: Budget
+    now: Picture,
+    lift_id: int,
+    start: Stack | None,
+    turns: Sequence[Turn],
+    budget: Budget,
+    equipment: Equipment | None = None,
 ) -> Made | None:
     """The plan for these turns from this start; None where there is nothing to plan.
 
@@ -87,7 +154,7 @@ def plan_for(
     """
     if not turns:
         return None
-    equipment = now.equipment(lift_id)
+    equipment = equipment or now.equipment(lift_id)
     from_here = start if start is not None and owned(equipment, start) else ()
     targets = [turn.weight for turn in turns]
     wish = wish_of(now, lift_id)

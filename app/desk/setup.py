@@ -9,6 +9,7 @@ from sqlmodel import select
 
 from app.desk.entry import Desk, meet_entry
 from app.desk.errors import NotAllowedNow
+from app.desk.owned import pieces_left
 from app.desk.wish import Wish, wish_document
 from app.loading.equipment import Order
 from app.meet.presets import PRESETS, Preset, exact, preset
@@ -33,7 +34,10 @@ def start_meet(desk: Desk, name: str, unit: str, *, who: str = "director") -> in
 
 
 def add_platform(desk: Desk, meet_id: int, name: str, preset_key: str, *, who: str) -> int:
-    """A platform with its stock, its implements, one session and its lifts; its id."""
+    """A platform with its stock, its implements, one session and its lifts; its id.
+
+    Where the meet counts what it owns, the stock is what no other platform has.
+    """
     name = checked_name(name, "the platform")
     with meet_entry(desk, meet_id, who) as work:
         meet = get(work.session, MeetRow, meet_id, "meet")
@@ -41,7 +45,7 @@ def add_platform(desk: Desk, meet_id: int, name: str, preset_key: str, *, who: s
         taken = work.session.exec(select(PlatformRow.name).where(PlatformRow.meet_id == meet_id)).all()
         if name.casefold() in [other.casefold() for other in taken]:
             raise NotAllowedNow(f"There is already a platform called “{name}”. Choose another name.")
-        platform = PlatformRow(meet_id=meet_id, name=name, changed_at=work.now, bar=[])
+        platform = PlatformRow(meet_id=meet_id, name=name, changed_at=work.now, bar=[], spare=[])
         work.session.add(platform)
         work.session.flush()
         platform_id = key(platform)
@@ -52,7 +56,7 @@ def add_platform(desk: Desk, meet_id: int, name: str, preset_key: str, *, who: s
             PlateRow(
                 platform_id=platform_id,
                 face=Fraction(plate.face),
-                count=plate.count,
+                count=pieces_left(work.session, meet_id, Fraction(plate.face), plate.count),
                 thickness_mm=exact(plate.thickness_mm),
                 diameter_mm=exact(plate.diameter_mm),
                 colour=plate.colour,

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from datetime import datetime, timedelta
+from fractions import Fraction
 
 from app.desk.entry import Work
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
@@ -109,8 +110,25 @@ def moment_of(work: Work, subject: Subject) -> Moment:
         last_lift=subject.programme.lifts[-1].id == subject.attempt.lift_id,
         flight_starts=get(work.session, FlightRow, subject.lifter.flight_id, "flight").starts_at,
         attempts_before=_attempts_before(subject),
-        bar_weight=bar.hand.weight if rising and subject.here and bar.hand else None,
+        bar_weight=_bar_weight(subject) if rising else None,
     )
+
+
+def _bar_weight(subject: Subject) -> Fraction | None:
+    """How high a rising bar is in this flight's lift: the heaviest weight lifted, or the one called since."""
+    members = {lifter.id for lifter in subject.programme.of_flight(subject.lifter.flight_id)}
+    weights = [
+        a.weight
+        for a in subject.programme.attempts
+        if a.weight is not None
+        and a.result in (Result.GOOD, Result.MISSED)
+        and a.lift_id == subject.attempt.lift_id
+        and a.lifter_id in members
+    ]
+    hand = subject.now.bar.hand
+    if subject.here and hand is not None and not subject.in_hand:
+        weights.append(hand.weight)
+    return max(weights, default=None)
 
 
 def _asked_since(subject: Subject) -> datetime | None:

@@ -46,11 +46,17 @@ class Hand:
 
 @dataclass(frozen=True, slots=True)
 class Bar:
-    """The platform's iron: what each end carries (None = nobody knows), and the instruction out."""
+    """The platform's iron: what each end carries (None = nobody knows), and the instruction out.
+
+    Where several belts are in circulation, ``spare`` is what hangs on the one that is free while a lifter has
+    the other, and ``ahead`` the instruction by which the crew makes it up meanwhile.
+    """
 
     condition: Condition
     carries: Stack | None
     hand: Hand | None
+    spare: Stack | None = ()
+    ahead: Hand | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -83,34 +89,45 @@ def overtaken(bar: Bar, order: Sequence[Turn]) -> bool:
 def instruct(bar: Bar, turn: Turn, stack: Stack, why: str = "") -> Bar:
     """Give the crew its next change, from what is on the bar now. Freezes it."""
     hand = Hand(turn.attempt.id, turn.weight, bar.carries, stack, why)
-    return Bar(Condition.CHANGING, bar.carries, hand)
+    return replace(bar, condition=Condition.CHANGING, hand=hand)
 
 
 def loaded(bar: Bar) -> Bar:
     """The crew, or the table for it, says that the bar is loaded as shown."""
     if bar.hand is None or bar.condition is not Condition.CHANGING:
         raise BarRefused("There is no change to confirm.")
-    return Bar(Condition.LIFTING, bar.hand.stack, bar.hand)
+    return replace(bar, condition=Condition.LIFTING, carries=bar.hand.stack)
 
 
 def not_loaded(bar: Bar) -> Bar:
     """Takes “bar is loaded” back: the crew goes on with the same change."""
     if bar.hand is None or bar.condition is not Condition.LIFTING:
         raise BarRefused("The bar is not confirmed as loaded.")
-    return Bar(Condition.CHANGING, bar.hand.before, bar.hand)
+    return replace(bar, condition=Condition.CHANGING, carries=bar.hand.before)
 
 
 def lifted(bar: Bar) -> Bar:
-    """The attempt on the bar has a result: the bar carries what was shown, and the hands are free."""
+    """The attempt on the bar has a result: the bar carries what was shown, and the hands are free.
+
+    If the other belt was being made up meanwhile, that instruction goes on as it was, and the belt that comes
+    back is the spare one.
+    """
     if bar.hand is None:
-        return Bar(Condition.IDLE, bar.carries, None)
-    return Bar(Condition.IDLE, bar.hand.stack, None)
+        return replace(bar, condition=Condition.IDLE)
+    if bar.ahead is not None:
+        return Bar(Condition.CHANGING, bar.ahead.before, bar.ahead, bar.hand.stack)
+    return replace(bar, condition=Condition.IDLE, carries=bar.hand.stack, hand=None)
+
+
+def prepare(bar: Bar, turn: Turn, stack: Stack, why: str = "") -> Bar:
+    """While a lifter has one belt: the crew's change for the next one, from what is on the spare belt."""
+    return replace(bar, ahead=Hand(turn.attempt.id, turn.weight, bar.spare, stack, why))
 
 
 def found(bar: Bar, carries: Stack | None) -> Bar:
     """Somebody has looked: each end carries this. None: nobody can tell, build from empty. A hold stays on."""
     condition = Condition.HOLD if bar.condition is Condition.HOLD else Condition.IDLE
-    return Bar(condition, carries, None)
+    return replace(bar, condition=condition, carries=carries, hand=None, ahead=None)
 
 
 def hold(bar: Bar) -> Bar:

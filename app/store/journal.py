@@ -24,7 +24,7 @@ from app.store.tables import TABLES, Exact, JournalRow, Row
 # Derived, or counted up whatever happens: no part of the meet's state.
 NOT_KEPT = {"platform": {"revision", "changed_at", "plan"}}
 # The iron itself. An undo changes what was entered; it cannot move plates.
-IRON = {"platform": {"condition", "bar", "hand", "implement_id", "loaded_at"}}
+IRON = {"platform": {"condition", "bar", "hand", "spare", "ahead", "implement_id", "loaded_at"}}
 
 Edit = dict[str, Any]
 """``{"table", "id", "before": {column: value} | None, "after": {column: value} | None}``"""

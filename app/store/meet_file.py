@@ -122,8 +122,9 @@ def _renumbered(
     for column, other in references(name).items():
         if out.get(column) is not None:
             out[column] = _other(numbers, other, out[column])
-    if name == "platform" and out.get("hand"):
-        out["hand"] = out["hand"] | {"attempt": _other(numbers, "attempt", out["hand"]["attempt"])}
+    for column in ("hand", "ahead") if name == "platform" else ():
+        if out.get(column):
+            out[column] = out[column] | {"attempt": _other(numbers, "attempt", out[column]["attempt"])}
     if name == "journal":
         out["edits"] = [_edit(edit, numbers) for edit in out["edits"]]
     return out
@@ -185,8 +186,7 @@ def _read(text: str) -> dict[str, list[dict[str, Any]]]:
 
 def _is_table(rows: object) -> bool:
     return isinstance(rows, list) and all(
-        isinstance(row, dict) and type(row.get("row")) is int and 0 < row["row"] < 10_000_000
-        for row in rows
+        isinstance(row, dict) and type(row.get("row")) is int and 0 < row["row"] < 10_000_000 for row in rows
     )
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from datetime import datetime
 from fractions import Fraction
@@ -63,6 +63,7 @@ class Tool:
     kind: str
     implement: Implement
     collar: Collar | None
+    pieces: int = 1
 
 
 @dataclass(frozen=True, slots=True)
@@ -148,7 +149,8 @@ def picture(session: Session, platform_id: int) -> Picture:
         stock=stock(session, platform_id),
         tools=tools(session, platform_id),
         sessions=tuple(
-            (key(row), row.name, _programme(row, lifts, flights, lifters, attempts, meet.unit)) for row in sessions
+            (key(row), row.name, _programme(row, lifts, flights, lifters, attempts, meet.unit))
+            for row in sessions
         ),
         rules={key(row): to_rules(row, meet.unit) for row in sessions},
         loading={key(row): row.loading or {} for row in lifts},
@@ -214,6 +216,7 @@ def to_tool(row: ImplementRow) -> Tool:
         row.kind,
         Implement(row.mass, 2 if row.kind == "bar" else 1, row.usable_mm),
         collar,
+        row.pieces,
     )
 
 
@@ -272,33 +275,52 @@ def to_stack(stored: Sequence[str] | None) -> tuple[Fraction, ...] | None:
 
 def to_bar(row: PlatformRow) -> Bar:
     """What is on the bar, from the platform's row."""
-    hand = None
-    if row.hand is not None:
-        hand = Hand(
-            attempt_id=row.hand["attempt"],
-            weight=parse_mass(row.hand["weight"]),
-            before=to_stack(row.hand["before"]),
-            stack=to_stack(row.hand["stack"]) or (),
-            why=row.hand.get("why", ""),
-        )
-    return Bar(Condition(row.condition), to_stack(row.bar), hand)
+    return Bar(
+        Condition(row.condition),
+        to_stack(row.bar),
+        _to_hand(row.hand),
+        to_stack(row.spare),
+        _to_hand(row.ahead),
+    )
+
+
+def _to_hand(stored: Mapping[str, Any] | None) -> Hand | None:
+    if stored is None:
+        return None
+    return Hand(
+        attempt_id=stored["attempt"],
+        weight=parse_mass(stored["weight"]),
+        before=to_stack(stored["before"]),
+        stack=to_stack(stored["stack"]) or (),
+        why=stored.get("why", ""),
+    )
 
 
 def store_bar(row: PlatformRow, bar: Bar) -> None:
     """Write the iron back, if it is not as it was (an equal value must not look like a change)."""
     stored = {
         "condition": bar.condition.value,
-        "bar": None if bar.carries is None else faces(bar.carries),
-        "hand": None
-        if bar.hand is None
-        else {
-            "attempt": bar.hand.attempt_id,
-            "weight": show_mass(bar.hand.weight),
-            "before": None if bar.hand.before is None else faces(bar.hand.before),
-            "stack": faces(bar.hand.stack),
-            "why": bar.hand.why,
-        },
+        "bar": _stored_stack(bar.carries),
+        "hand": _stored_hand(bar.hand),
+        "spare": _stored_stack(bar.spare),
+        "ahead": _stored_hand(bar.ahead),
     }
     for column, value in stored.items():
         if getattr(row, column) != value:
             setattr(row, column, value)
+
+
+def _stored_stack(stack: Sequence[Fraction] | None) -> list[str] | None:
+    return None if stack is None else faces(stack)
+
+
+def _stored_hand(hand: Hand | None) -> dict[str, Any] | None:
+    if hand is None:
+        return None
+    return {
+        "attempt": hand.attempt_id,
+        "weight": show_mass(hand.weight),
+        "before": _stored_stack(hand.before),
+        "stack": faces(hand.stack),
+        "why": hand.why,
+    }

@@ -88,6 +88,8 @@ class PlatformRow(Row, table=True):
     implement_id: int | None = Field(default=None)
     bar: list[str] | None = _json()  # faces a side, inside to outside; null = nobody knows
     hand: dict[str, Any] | None = _json()
+    spare: list[str] | None = _json()  # what is on the belt that is free; null = nobody knows
+    ahead: dict[str, Any] | None = _json()  # the instruction by which the free belt is made up
     plan: dict[str, Any] | None = _json()
 
 

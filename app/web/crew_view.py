@@ -14,6 +14,7 @@ from app.meet.order import Turn
 from app.meet.platform import Condition
 from app.store.picture import Picture
 from app.web.languages import Say
+from app.web.other_belt import other_belt_view
 from app.web.views import ChangeView, CrewState, CrewView, FallView, RackView, ThenView, UpView
 from app.web.words import clock_words, end_view, plate_views, side_words, stack_words, where_words
 
@@ -79,10 +80,10 @@ def bare_crew_view(now: Picture, say: Say = str) -> CrewView:
 def crew_view(one: Board, say: Say = str) -> CrewView:
     """The one screen the crew reads, in the language that ``say`` speaks."""
     state, message = _state(one, say)
-    change = None
+    change, other = None, None
     if state in SHOWS_HAND and one.now.bar.hand is not None:
         try:
-            change = _change_in_hand(one)
+            change, other = _change_in_hand(one), other_belt_view(one)
         except WrongLoad as wrong:
             # The promise of the house: rather no load than a wrong one. (Where the crew is only asked what is
             # on the bar, nothing is to be loaded: a plate of the old change may well have been taken away.)
@@ -105,7 +106,8 @@ def crew_view(one: Board, say: Say = str) -> CrewView:
         shown=instruction_name(one.now.bar),
         new_weight=show_mass(one.up.weight) if state == "changed" and one.up else "",
         bar_now=_bar_now(one, state),
-        fall=_fall(one, say) if state == "lifting" else None,
+        fall=_fall(one, say) if state == "lifting" and other is None else None,
+        other=other if state == "lifting" else None,
     )
 
 

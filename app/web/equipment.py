@@ -6,18 +6,20 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, fields
 
 from fastapi import APIRouter
+from sqlmodel import col, select
 from starlette.concurrency import run_in_threadpool
 from starlette.datastructures import FormData
 from starlette.requests import Request
 from starlette.responses import Response
 
-from app.desk import equipment
+from app.desk import equipment, stock
 from app.desk.entry import Desk
 from app.desk.equipment import CHOICES, LiftWish, lifts_seen, stock_seen
 from app.desk.errors import DeskError
 from app.loading.mass import show_mass
 from app.store.engine import reading
-from app.store.picture import Picture, PlateStock, Tool, picture
+from app.store.picture import Picture, PlateStock, Tool, key, picture
+from app.store.tables import PlatformRow
 from app.web import htmx
 from app.web.house import DeskDep, OfficialDep, frame, page, who
 from app.web.words import tool_words
@@ -26,7 +28,7 @@ router = APIRouter(prefix="/platforms/{platform_id}/equipment")
 ROLE = "director"
 
 PLATE_COLUMNS = ("face", "count", "thickness", "diameter", "colour")
-TOOL_COLUMNS = ("id", "name", "kind", "mass", "usable", "collar_mass", "collar_width")
+TOOL_COLUMNS = ("id", "name", "kind", "mass", "usable", "collar_mass", "collar_width", "pieces")
 SPARE_ROWS = 2
 MOST_ROWS = 60
 
@@ -48,6 +50,9 @@ class EquipmentView:
     choices: dict[str, dict[str, str]]
     total: str
     tool_sums: tuple[str, ...]
+    others: tuple[tuple[int, str], ...]  # the meet's other platforms
+    lendable: tuple[tuple[str, int], ...]  # faces that are here, with how many
+    lending: Mapping[str, str]
 
 
 @router.get("")
@@ -69,8 +74,10 @@ def _render(
 ) -> Response:
     with reading(desk.engine) as session:
         now = picture(session, platform_id)
+        query = select(PlatformRow).where(PlatformRow.meet_id == now.meet_id).order_by(col(PlatformRow.id))
+        others = tuple((key(row), row.name) for row in session.exec(query) if row.id != platform_id)
     around = frame(now.meet, official, now.meet_id, platform_id, "Equipment")
-    view = _view(now, typed or {})
+    view = _view(now, typed or {}, others)
     return page(
         "equipment/page.html",
         status,
@@ -82,7 +89,7 @@ def _render(
     )
 
 
-def _view(now: Picture, typed: Mapping[str, Rows]) -> EquipmentView:
+def _view(now: Picture, typed: Mapping[str, Rows], others: tuple[tuple[int, str], ...]) -> EquipmentView:
     spare_plates: Rows = [dict.fromkeys(PLATE_COLUMNS, "") | {"colour": "#777777"} for _ in range(SPARE_ROWS)]
     spare_tool: Rows = [dict.fromkeys(TOOL_COLUMNS, "") | {"kind": "bar"}]
     total = sum(item.plate.face * item.plate.count for item in now.stock)
@@ -98,6 +105,11 @@ def _view(now: Picture, typed: Mapping[str, Rows]) -> EquipmentView:
         choices=CHOICES,
         total=show_mass(total) if total else "0",
         tool_sums=tuple(tool_words(tool, now.unit) for tool in now.tools),
+        others=others,
+        lendable=tuple(
+            (show_mass(item.plate.face), item.plate.count) for item in now.stock if item.plate.count
+        ),
+        lending=next(iter(typed.get("lend", [])), {"face": "", "pieces": "2", "to": ""}),
     )
 
 
@@ -119,6 +131,7 @@ def _tool_row(tool: Tool) -> dict[str, str]:
         "name": tool.name,
         "kind": tool.kind,
         "mass": show_mass(tool.implement.mass),
+        "pieces": str(tool.pieces),
         "usable": "" if usable is None else show_mass(usable),
         "collar_mass": "" if collar is None else show_mass(collar.mass),
         "collar_width": "" if collar is None or collar.width_mm is None else show_mass(collar.width_mm),
@@ -171,6 +184,37 @@ async def save_plates(request: Request, platform_id: int, desk: DeskDep, officia
     return await _save(request, desk, platform_id, official, save, {"plates": rows}, saved)
 
 
+@router.post("/out")
+async def take_out(request: Request, platform_id: int, desk: DeskDep, official: OfficialDep) -> Response:
+    """One broken or missing piece out of stock; what else was typed stays in the form."""
+    form = await request.form()
+    rows = _typed_rows(form, PLATE_COLUMNS)
+    face = str(form.get("out", ""))
+
+    def take() -> str:
+        said = stock.take_out(desk, platform_id, face, str(form.get("seen", "")), who=who(official, ROLE))
+        for row in rows:
+            if row["face"] == face and row["count"].isdecimal():
+                row["count"] = str(max(0, int(row["count"]) - 1))
+        return said
+
+    return await _save(request, desk, platform_id, official, take, {"plates": rows}, keep=True)
+
+
+@router.post("/lend")
+async def lend(request: Request, platform_id: int, desk: DeskDep, official: OfficialDep) -> Response:
+    """Pieces of one plate to another platform."""
+    form = await request.form()
+    typed = {name: str(form.get(name, "")) for name in ("face", "pieces", "to")}
+    to = int(typed["to"]) if typed["to"].isdecimal() and len(typed["to"]) < 10 else 0
+
+    def give() -> str:
+        seen, who_ = str(form.get("seen", "")), who(official, ROLE)
+        return stock.lend(desk, platform_id, to, typed["face"], typed["pieces"], seen, who=who_)
+
+    return await _save(request, desk, platform_id, official, give, {"lend": [typed]})
+
+
 @router.post("/tools")
 async def save_tools(request: Request, platform_id: int, desk: DeskDep, official: OfficialDep) -> Response:
     """The bars, belts and collars."""
@@ -210,19 +254,21 @@ async def _save(
     desk: Desk,
     platform_id: int,
     official: str,
-    save: Callable[[], None],
+    save: Callable[[], str | None],
     typed: Mapping[str, Rows],
-    said: str,
+    said: str = "",
+    *,
+    keep: bool = False,
 ) -> Response:
-    """Save, or show the page again with everything as it was typed."""
+    """Save, or show the page again with everything as it was typed (also afterwards, if that is to be kept)."""
 
     def saved_or_refused() -> Response:
         try:
-            save()
+            told = save() or said
         except DeskError as refused:
             sentence, status = str(refused), refused.status_code
             return _render(request, desk, platform_id, official, refused=sentence, status=status, typed=typed)
-        return _render(request, desk, platform_id, official, said=said)
+        return _render(request, desk, platform_id, official, said=told, typed=typed if keep else None)
 
     # A save plans anew: that must not hold up the streams of the other pages.
     return await run_in_threadpool(saved_or_refused)

@@ -109,6 +109,16 @@ CrewState = Literal["idle", "waiting", "changing", "lifting", "changed", "hold",
 
 
 @dataclass(frozen=True, slots=True)
+class OtherBeltView:
+    """The load that is made up on the free belt while a lifter has the other one."""
+
+    weight: str
+    lifter: str
+    change: ChangeView
+    warning: str  # the next weight has changed since; "" as long as it has not
+
+
+@dataclass(frozen=True, slots=True)
 class CrewView:
     """The crew's screen at one revision of the platform."""
 
@@ -128,6 +138,7 @@ class CrewView:
     new_weight: str = ""  # state "changed": the weight that replaces up.weight
     bar_now: str = ""  # what is known to be on each end, "25 + 15"
     fall: FallView | None = None  # at a round's end, while the bar is loaded
+    other: OtherBeltView | None = None
 
 
 @dataclass(frozen=True, slots=True)

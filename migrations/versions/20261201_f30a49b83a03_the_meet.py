@@ -43,6 +43,8 @@ def upgrade() -> None:
         sa.Column("implement_id", sa.Integer(), nullable=True),
         sa.Column("bar", sa.JSON(none_as_null=True), nullable=True),
         sa.Column("hand", sa.JSON(none_as_null=True), nullable=True),
+        sa.Column("spare", sa.JSON(none_as_null=True), nullable=True),
+        sa.Column("ahead", sa.JSON(none_as_null=True), nullable=True),
         sa.Column("plan", sa.JSON(none_as_null=True), nullable=True),
         sa.ForeignKeyConstraint(["meet_id"], ["meet.id"], name=op.f("fk_platform_meet_id_meet")),
         sa.PrimaryKeyConstraint("id", name=op.f("pk_platform")),
