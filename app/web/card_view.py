@@ -11,13 +11,16 @@ from app.loading.mass import show_mass
 from app.loading.stack import check_stack
 from app.meet.model import RESULT_WORDS, Attempt, Lifter, Result, attempt_name
 from app.web.views import CardRow, CardView
-from app.web.words import side_words, stack_words, sum_words, tool_words, whole_words
+from app.web.words import now_words, side_words, stack_words, sum_words, tool_words, whole_words
 
 
 def card_view(one: Board, round_number: int, *, now: datetime) -> CardView:
     """The card of a round; ``now`` is printed on it. Raises WrongLoad rather than print a wrong load."""
     steps = [step for step in one.steps if step.turn.attempt.number == round_number]
-    rows = [_done_row(one, a, lifter) for a, lifter in _done(one, round_number)]
+    done = _done(one, round_number)
+    if not done and all(step.turn.assumed for step in steps):
+        steps = []  # nobody has handed in: an order made of guesses would only mislead, so the card is blank
+    rows = [_done_row(one, a, lifter) for a, lifter in done]
     rows += [_row(one, one.equipment, step, len(rows) + place) for place, step in enumerate(steps, start=1)]
     return CardView(
         meet=one.now.meet,
@@ -26,11 +29,11 @@ def card_view(one: Board, round_number: int, *, now: datetime) -> CardView:
         unit=one.now.unit,
         side=side_words(one.tool),
         implement=tool_words(one.tool, one.now.unit),
-        start=stack_words(steps[0].before) if steps else "empty",
+        start=stack_words(steps[0].before) if steps else "…………",
         rows=tuple(rows),
-        undeclared=_undeclared(one, round_number),
+        undeclared=_undeclared(one, round_number, {step.turn.lifter.id for step in steps}),
         revision=one.now.revision,
-        printed=now.astimezone().strftime("%Y-%m-%d %H:%M"),
+        printed=now_words(now),
         total=_total(steps, one.equipment, one.now.unit, side_words(one.tool)),
     )
 
@@ -100,10 +103,9 @@ def _note(step: Step) -> str:
     return "not handed in: by the rule" if step.turn.assumed else ""
 
 
-def _undeclared(one: Board, round_number: int) -> tuple[CardRow, ...]:
-    """Lifters with no weight and no default for this round: a blank line each."""
-    known = {step.turn.lifter.id for step in one.steps if step.turn.attempt.number == round_number}
-    known |= {lifter.id for _, lifter in _done(one, round_number)}
+def _undeclared(one: Board, round_number: int, planned: set[int]) -> tuple[CardRow, ...]:
+    """Lifters with no weight for this round: a blank line each, by lot."""
+    known = planned | {lifter.id for _, lifter in _done(one, round_number)}
     return tuple(
         CardRow(
             order="",

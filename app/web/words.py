@@ -88,6 +88,11 @@ def clock_words(at: datetime) -> str:
     return at.astimezone().strftime("%H:%M:%S")
 
 
+def now_words(at: datetime) -> str:
+    """A moment as paper names it: ``2027-03-06 10:42`` in the time zone of the machine."""
+    return at.astimezone().strftime("%Y-%m-%d %H:%M")
+
+
 def count_words(plates: int, collar: bool) -> str:  # noqa: FBT001 - a count and its companion
     """``4 plates + collar``."""
     words = "no plates" if plates == 0 else "1 plate" if plates == 1 else f"{plates} plates"

@@ -22,11 +22,20 @@ PAGES = {
     "/platforms/1/screen": "This screen, Main hall",
     "/platforms/1/cards": "Cards, Main hall",
     "/platforms/1/cards/1/1/2": "Card, Flight A · Squat · round 2",
+    "/platforms/1/chart/1": "Loading chart, Squat",
+    "/platforms/1/checklist": "Set-up, Main hall",
     "/platforms/1/equipment": "Equipment, Main hall",
 }
-# Walls without navigation, and a page that is reached from them.
-WALLS = ("/platforms/1/crew", "/platforms/1/check", "/platforms/1/announcer", "/platforms/1/screen")
-FILES = {"/meets/1/roster.csv"}
+# Walls without navigation, and pages that are reached from others.
+WALLS = tuple(
+    f"/platforms/1/{name}" for name in ("crew", "check", "announcer", "screen", "chart/1", "checklist")
+)
+FILES = {
+    "/meets/1/roster.csv",
+    "/platforms/1/cards/1/1/2/pdf",
+    "/platforms/1/chart/1/pdf",
+    "/platforms/1/checklist/pdf",
+}
 STREAMS = {"/platforms/1/events"}
 POSTS = (
     "/meets",
