@@ -42,8 +42,10 @@ from app.desk.board import Board, board
 from app.desk.entry import Desk
 from app.desk.hub import Hub, QuietHub
 from app.desk.roster import import_roster
+from app.desk.rule_book import save_rules
 from app.desk.setup import add_platform, start_meet
 from app.meet.model import Attempt, Lifter, Result
+from app.meet.rule_reading import preset_rules, rules_document
 from app.planning import Budget
 from app.store.engine import make_engine, reading
 from app.store.picture import Picture, picture
@@ -175,6 +177,28 @@ class Hall:
         self.judge(name, number, result, lift)
         if following:
             self.declare(name, number + 1, following, lift)
+
+    def up(self) -> tuple[str, int, Fraction] | None:
+        """Who is up: the name, the number of the attempt, and the weight."""
+        turn = self.board().up
+        return None if turn is None else (turn.lifter.name, turn.attempt.number, turn.weight)
+
+    def order(self) -> list[tuple[str, int, Fraction]]:
+        """Everything that the flight still lifts, in lifting order."""
+        return [(turn.lifter.name, turn.attempt.number, turn.weight) for turn in self.board().order]
+
+    def wait(self, seconds: int) -> None:
+        """Time passes in the hall."""
+        clock = self.desk.clock
+        assert isinstance(clock, Clock)
+        clock.now += timedelta(seconds=seconds)
+
+    def rules(self, preset: str = "", **settings: str) -> str:
+        """Olga changes rules of the platform's session on the Rules page; the others stay, or become a preset's."""
+        now = self.picture()
+        (session_id,) = now.rules
+        typed = rules_document(preset_rules(preset, now.unit) if preset else now.rules[session_id]) | settings
+        return save_rules(self.desk, self.platform_id, session_id, typed, who=OLGA)
 
     def bring(self, flight: str, lift: str) -> None:
         """Wanda brings a flight on."""

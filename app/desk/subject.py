@@ -126,7 +126,7 @@ def _bar_weight(subject: Subject) -> Fraction | None:
         and a.lifter_id in members
     ]
     hand = subject.now.bar.hand
-    if subject.here and hand is not None and not subject.in_hand:
+    if subject.here and hand is not None:
         weights.append(hand.weight)
     return max(weights, default=None)
 

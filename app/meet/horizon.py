@@ -59,8 +59,12 @@ class Programme:
 
     def order(self, flight_id: int, lift_id: int) -> tuple[Turn, ...]:
         """Everything the flight still has to lift in this lift, in lifting order by the session's rules."""
-        here = [lifter for lifter in self.of_flight(flight_id) if not lifter.withdrawn]
-        attempts = self.of_lift(lift_id)
+        members = self.of_flight(flight_id)
+        of_lift = self.of_lift(lift_id)
+        # Only this flight's: another flight's weights say nothing about how high a rising bar is here. But those of
+        # its lifters who have left do.
+        attempts = {lifter.id: of_lift.get(lifter.id, ()) for lifter in members}
+        here = [lifter for lifter in members if not lifter.withdrawn]
         done = [(a.lifted_at, a.id) for a in self.attempts if a.lift_id == lift_id and a.lifted_at is not None]
         granted = [a for a in self.attempts if a.lift_id == lift_id and a.retake and a.result is Result.OPEN]
         return ruled_order(
