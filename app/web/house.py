@@ -79,6 +79,7 @@ def frame(
             ("Check", f"/platforms/{platform_id}/check"),
             ("Announcer", f"/platforms/{platform_id}/announcer"),
             ("Cards", f"/platforms/{platform_id}/cards"),
+            ("Join", f"/platforms/{platform_id}/join"),
         ]
     return Frame(meet, tuple(Link(text, href, text == here) for text, href in pages), official)
 

@@ -22,6 +22,7 @@ PAGES = {
     "/platforms/1/screen": "This screen, Main hall",
     "/platforms/1/cards": "Cards, Main hall",
     "/platforms/1/cards/1/1/2": "Card, Flight A · Squat · round 2",
+    "/platforms/1/join": "Join, Main hall",
     "/platforms/1/chart/1": "Loading chart, Squat",
     "/platforms/1/checklist": "Set-up, Main hall",
     "/platforms/1/equipment": "Equipment, Main hall",
@@ -35,6 +36,7 @@ FILES = {
     "/platforms/1/cards/1/1/2/pdf",
     "/platforms/1/chart/1/pdf",
     "/platforms/1/checklist/pdf",
+    "/platforms/1/join/crew.svg",
 }
 STREAMS = {"/platforms/1/events"}
 POSTS = (
