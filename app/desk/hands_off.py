@@ -22,7 +22,8 @@ def check_hands_off(session: Session, edits: Iterable[Edit]) -> None:
     for edit in edits:
         before = edit["before"] or {}
         hand = before.get("hand")
-        if hand is None and "implement_id" in before:  # another bar may want the same stack, so the same hand
+        if edit["table"] == "platform" and hand is None and "implement_id" in before:
+            # Another bar may want the same stack, so the same hand.
             hand = session.get_one(PlatformRow, edit["id"]).hand
         if edit["table"] != "platform" or hand is None or before.get("condition") != Condition.LIFTING:
             continue

@@ -2,18 +2,23 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from typing import Annotated
 from urllib.parse import quote
 
 from fastapi import APIRouter, Form
-from sqlmodel import col, select
+from sqlmodel import Session, col, select
+from starlette.concurrency import run_in_threadpool
 from starlette.requests import Request
 from starlette.responses import Response
 
-from app.desk import setup
+from app.desk import setup, stock
 from app.desk.entry import Desk
 from app.desk.errors import DeskError
+from app.desk.owned import owned_pieces, placed
 from app.desk.roster import pictures
+from app.desk.stock import owned_seen
+from app.loading.mass import show_mass
 from app.meet.presets import PRESETS
 from app.store.engine import reading
 from app.store.picture import get, key
@@ -22,6 +27,17 @@ from app.web import htmx
 from app.web.house import NAME_COOKIE, DeskDep, OfficialDep, frame, page, who
 
 router = APIRouter()
+
+Rows = list[dict[str, str]]
+
+
+@dataclass(frozen=True, slots=True)
+class OwnedView:
+    """What the meet owns and where it stands: one row a face; before it is counted, what stands at the platforms."""
+
+    counted: bool
+    seen: str
+    rows: Rows
 
 
 @router.get("/")
@@ -80,14 +96,18 @@ def _render_meet(
     refused: str = "",
     typed: str = "",
     preset: str = "",
+    owned_refused: str = "",
+    owned_typed: Rows | None = None,
+    status: int = 422,
 ) -> Response:
     with reading(desk.engine) as session:
         meet = get(session, MeetRow, meet_id, "meet")
         name, unit = meet.name, meet.unit
         platforms = pictures(session, meet_id)
+        owned = _owned(session, meet, owned_typed)
     return page(
         "home/meet.html",
-        422 if refused else 200,
+        status if refused or owned_refused else 200,
         frame=frame(name, official, meet_id, here="Meet"),
         layout=htmx.layout(request),
         meet_id=meet_id,
@@ -98,6 +118,27 @@ def _render_meet(
         refused=refused,
         typed=typed,
         preset=preset,
+        owned=owned,
+        owned_refused=owned_refused,
+    )
+
+
+def _owned(session: Session, meet: MeetRow, typed: Rows | None) -> OwnedView:
+    stand, have = placed(session, key(meet)), owned_pieces(meet)
+    words = {
+        show_mass(face): ", ".join(f"{name} {count}" for name, count in places)
+        for face, places in stand.items()
+    }
+    sums = {face: sum(count for _, count in places) for face, places in stand.items()}
+    counts = sums if have is None else dict.fromkeys(stand, 0) | have
+    rows = typed or [
+        {"face": show_mass(face), "count": str(counts[face])} for face in sorted(counts, reverse=True)
+    ]
+    spare: Rows = [] if typed else [{"face": "", "count": ""}]
+    return OwnedView(
+        counted=have is not None,
+        seen=owned_seen(meet),
+        rows=[row | {"places": words.get(row["face"], "")} for row in [*rows, *spare]],
     )
 
 
@@ -116,6 +157,35 @@ def add_platform(
     except DeskError as refused:
         return _render_meet(request, desk, meet_id, official, refused=str(refused), typed=name, preset=preset)
     return htmx.go_to(request, f"/meets/{meet_id}")
+
+
+@router.post("/meets/{meet_id}/owned")
+async def save_owned(request: Request, meet_id: int, desk: DeskDep, official: OfficialDep) -> Response:
+    """What the meet owns, or that nobody counts it."""
+    form = await request.form()
+    rows = [
+        {"face": str(face), "count": str(count)}
+        for face, count in zip(form.getlist("face"), form.getlist("count"), strict=False)
+    ]
+    counted = None if form.get("uncounted") else rows
+    seen = str(form.get("seen", ""))
+
+    def saved_or_refused() -> Response:
+        try:
+            stock.save_owned(desk, meet_id, counted, seen, who=who(official, "director"))
+        except DeskError as refused:
+            return _render_meet(
+                request,
+                desk,
+                meet_id,
+                official,
+                owned_refused=str(refused),
+                owned_typed=rows,
+                status=refused.status_code,
+            )
+        return htmx.go_to(request, f"/meets/{meet_id}#owned")
+
+    return await run_in_threadpool(saved_or_refused)
 
 
 @router.post("/official")
