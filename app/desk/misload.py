@@ -3,17 +3,19 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 
 from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import NotAllowedNow
+from app.desk.people import check_owner
 from app.desk.subject import Seen, Subject, find_subject, stamp
 from app.loading.equipment import Stack
 from app.loading.mass import parse_mass, show_mass
+from app.loading.stack import total_mass
 from app.meet.misload import ERROR_WORDS, Error, Found, Remedy, find_error, remedies
 from app.meet.model import Result
-from app.meet.platform import found
+from app.meet.platform import Condition, found
 from app.store.engine import reading
 from app.store.picture import get, store_bar
 from app.store.tables import PlatformRow
@@ -98,17 +100,18 @@ def take_remedy(
     """Take one of the remedies that :func:`inquire` gave for the same facts.
 
     A kept lift is recorded as the rules say; a retake opens the attempt again at the called weight and puts it
-    where the rules put it; before the lift the crew is told to put the bar right from what is really on it.
+    where the rules put it; before the lift the crew is told to put the bar right from what is really on it, and
+    after it the next change begins there.
     """
     with platform_entry(desk, platform_id, who) as work:
         subject = find_subject(work, seen)
+        check_owner(work, subject.lifter.flight_id)
         inquiry = _inquiry(subject, ends, kind)
         if inquiry.found is None or not 0 <= choice < len(inquiry.remedies):
             raise NotAllowedNow("There is no such remedy for this. Say again what was on the bar.")
         remedy = inquiry.remedies[choice]
-        if subject.attempt.result is Result.OPEN:
-            _put_right(work, subject, [read_end(end) for end in ends] if kind == "bar" else None)
-        elif remedy.place is not None:
+        _correct_the_bar(work, subject, _alike(ends) if kind == "bar" else None, kind)
+        if remedy.place is not None:
             subject.row.result, subject.row.retake = Result.OPEN.value, remedy.place.value
             subject.row.lifted_at = None
             stamp(subject.row, work)
@@ -121,9 +124,38 @@ def take_remedy(
         return f"{work.what}."
 
 
-def _put_right(work: Work, subject: Subject, stacks: Sequence[Stack] | None) -> None:
+def _alike(ends: Sequence[str]) -> Stack | None:
+    """What is on every end; None where the ends are not alike, which is no start for a change."""
+    stacks = {read_end(end) for end in ends}
+    return stacks.pop() if len(stacks) == 1 else None
+
+
+def _correct_the_bar(work: Work, subject: Subject, stack: Stack | None, kind: str) -> None:
+    if subject.attempt.result is Result.OPEN:
+        _put_right(work, subject, stack)
+    elif kind == "bar":
+        _tell_what_was_on(work, subject, stack)
+
+
+def _put_right(work: Work, subject: Subject, stack: Stack | None) -> None:
     """Not lifted yet: the bar is what it is. Unequal or disturbed ends cannot be a start: built from empty."""
     if not subject.in_hand:
         raise NotAllowedNow(f"The crew has not been shown a change for {subject.name}.")
-    alike = stacks is not None and len(set(stacks)) == 1
-    store_bar(work.platform, found(subject.now.bar, stacks[0] if alike and stacks else None))
+    store_bar(work.platform, found(subject.now.bar, stack))
+
+
+def _tell_what_was_on(work: Work, subject: Subject, stack: Stack | None) -> None:
+    """Lifted already: the crew's next change was made from the load as shown, and must begin with the true one.
+
+    Only while that bar still hangs as it was: it was lifted last and nobody has confirmed another load since. Of
+    two belts it is the one whose believed load makes the weight called.
+    """
+    bar, attempt = subject.now.bar, subject.attempt
+    times = [a.lifted_at for _, _, p in subject.now.sessions for a in p.attempts if a.lifted_at is not None]
+    if bar.condition is Condition.LIFTING or attempt.lifted_at is None or attempt.lifted_at < max(times):
+        return
+    equipment = subject.now.equipment(attempt.lift_id)
+    if bar.carries is not None and total_mass(equipment, bar.carries) == attempt.weight:
+        store_bar(work.platform, found(bar, stack))
+    elif bar.spare and total_mass(equipment, bar.spare) == attempt.weight:
+        store_bar(work.platform, replace(bar, spare=stack))

@@ -14,6 +14,7 @@ def withdraw(desk: Desk, platform_id: int, lifter_id: int, *, back: bool, who: s
     """A lifter leaves the meet (hurt, gone, no-show), or is back. What has been lifted stays as it is."""
     with platform_entry(desk, platform_id, who) as work:
         _, lifter = find_lifter(work, lifter_id)
+        check_owner(work, lifter.flight_id)
         row = get(work.session, LifterRow, lifter_id, "lifter")
         row.withdrawn = not back
         work.what = f"{lifter.name} {'is back' if back else 'withdraws'}"
@@ -24,6 +25,7 @@ def grant_fourth(desk: Desk, platform_id: int, lifter_id: int, lift_id: int, *, 
     """A fourth attempt for a record, where the rules have it: after the third, outside the order of the round."""
     with platform_entry(desk, platform_id, who) as work:
         programme, lifter = find_lifter(work, lifter_id)
+        check_owner(work, lifter.flight_id)
         if not programme.rules.fourth_for_record:
             raise NotAllowedNow(
                 "The rules of this session have no fourth attempt. The Rules page can allow it."

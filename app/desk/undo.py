@@ -7,14 +7,15 @@ back, each redo one forward again, until something new is entered.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 
 from sqlmodel import Session
 
-from app.desk.entry import Desk, platform_entry
+from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
-from app.store.journal import CannotUndo, last_redoable, last_undoable, put_back
-from app.store.tables import JournalRow
+from app.desk.people import check_owner
+from app.store.journal import CannotUndo, Edit, last_redoable, last_undoable, put_back
+from app.store.tables import AttemptRow, JournalRow, LifterRow
 
 Find = Callable[[Session, int, int | None], JournalRow | None]
 
@@ -38,6 +39,7 @@ def _reverse(desk: Desk, platform_id: int, entry_id: int | None, find: Find, wor
             raise SomebodyWasFirst(
                 f"Somebody made another entry since: “{entry.what}”. Look before you {word}."
             )
+        _check_owners(work, entry.edits)
         try:
             put_back(work.session, entry.edits, entry.what)
         except CannotUndo as refused:
@@ -46,6 +48,15 @@ def _reverse(desk: Desk, platform_id: int, entry_id: int | None, find: Find, wor
         plain = entry.what.removeprefix(UNDONE)
         work.what = f"{UNDONE if word == 'undo' else REDONE}{plain}"
         return f"{work.what[0].upper()}{work.what[1:]}."
+
+
+def _check_owners(work: Work, edits: Iterable[Edit]) -> None:
+    """An entry for a flight is taken back by whoever enters for it."""
+    for edit in edits:
+        row = work.session.get(AttemptRow, edit["id"]) if edit["table"] == "attempt" else None
+        lifter = work.session.get(LifterRow, row.lifter_id if row else 0)
+        if lifter is not None:
+            check_owner(work, lifter.flight_id)
 
 
 UNDONE, REDONE = "undone: ", "entered again: "

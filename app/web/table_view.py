@@ -4,15 +4,14 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from datetime import datetime
-from fractions import Fraction
 
 from app.desk.bar import instruction_name
 from app.desk.board import Board, Step, lifted_last
 from app.loading.mass import show_mass
-from app.meet.model import RESULT_WORDS, Attempt, Lifter, Result, attempt_name
-from app.meet.order import default_weight
+from app.meet.model import ROUNDS, Attempt, Lifter, Result, attempt_name
 from app.meet.platform import Condition
 from app.web.table_clock import DueLine, due_lines, pace_words, rest_words
+from app.web.table_score import ScoreRow, score_rows
 from app.web.views import PlateView
 from app.web.words import clock_words, plate_views, side_words, stack_words
 
@@ -49,32 +48,6 @@ class OrderRow:
     rack: str
     why: str = ""  # why the stack is not the chart's
     marks: tuple[str, ...] = ()  # "record", "retake"
-
-
-@dataclass(frozen=True, slots=True)
-class ScoreCell:
-    """One attempt of the score sheet."""
-
-    attempt_id: int
-    version: int
-    weight: str
-    result: str  # "good lift", …; "" for one still to come
-    kind: str  # "good", "missed", "passed", "open"
-
-
-@dataclass(frozen=True, slots=True)
-class ScoreRow:
-    """A lifter of the flight with the three attempts of the lift."""
-
-    lot: str
-    lifter: str
-    body_weight: str
-    rack: str
-    cells: tuple[ScoreCell, ...]
-    best: str
-    lifter_id: int
-    withdrawn: bool
-    may_have_fourth: bool
 
 
 @dataclass(frozen=True, slots=True)
@@ -162,8 +135,8 @@ def table_view(one: Board, who: str, at: datetime, focus: int = 0) -> TableView:
         bar_shown=stack_words(bar.hand.stack) if bar.hand else "",
         side=side_words(one.tool),
         order=rows,
-        score=tuple(_score_row(one, lifter) for lifter in one.programme.of_flight(one.flight.id)),
-        no_opener=tuple(_no_opener_row(one, lifter) for lifter in one.no_opener),
+        score=score_rows(one),
+        no_opener=_without_weight(one),
         undo_id=one.undo.id if one.undo else 0,
         undo=one.undo.what if one.undo else "",
         redo_id=one.redo.id if one.redo else 0,
@@ -307,15 +280,33 @@ def _change_words(step: Step, *, ask: bool) -> str:
     return "" if step.hands.off or step.hands.on else "no change"
 
 
-def _no_opener_row(one: Board, lifter: Lifter) -> OrderRow:
-    opener = next(a for a in one.programme.of_lift(one.lift.id)[lifter.id] if a.number == 1)
+def _without_weight(one: Board) -> tuple[OrderRow, ...]:
+    """Openers nobody has handed in, and fourth attempts granted without a weight yet: in no order, but to be typed."""
+    here = [lifter for lifter in one.programme.of_flight(one.flight.id) if not lifter.withdrawn]
+    attempts = one.programme.of_lift(one.lift.id)
+    fourths = [
+        _without_weight_row(one, lifter, attempt, "fourth attempt, no weight yet")
+        for lifter in here
+        for attempt in attempts.get(lifter.id, ())
+        if attempt.number > len(ROUNDS) and attempt.weight is None and attempt.result is Result.OPEN
+    ]
+    openers = [
+        _without_weight_row(
+            one, lifter, next(a for a in attempts[lifter.id] if a.number == 1), "no opener yet"
+        )
+        for lifter in one.no_opener
+    ]
+    return (*openers, *fourths)
+
+
+def _without_weight_row(one: Board, lifter: Lifter, attempt: Attempt, words: str) -> OrderRow:
     return OrderRow(
-        attempt_id=opener.id,
-        version=opener.version,
+        attempt_id=attempt.id,
+        version=attempt.version,
         place="–",
         lot=str(lifter.lot),
         lifter=lifter.name,
-        attempt=attempt_name(one.lift.name, 1),
+        attempt=attempt_name(one.lift.name, attempt.number),
         weight="",
         default="",
         step=show_mass(one.lift.step),
@@ -324,51 +315,6 @@ def _no_opener_row(one: Board, lifter: Lifter) -> OrderRow:
         new_round=0,
         off=(),
         on=(),
-        change="no opener yet",
+        change=words,
         rack=one.now.racks.get((lifter.id, one.lift.id), ""),
-    )
-
-
-def _score_row(one: Board, lifter: Lifter) -> ScoreRow:
-    attempts = {a.number: a for a in one.programme.of_lift(one.lift.id).get(lifter.id, ())}
-    best = max(
-        (a.weight for a in attempts.values() if a.result is Result.GOOD and a.weight is not None),
-        default=None,
-    )
-    return ScoreRow(
-        lot=str(lifter.lot),
-        lifter=lifter.name,
-        body_weight="" if lifter.body_weight is None else show_mass(lifter.body_weight),
-        rack=one.now.racks.get((lifter.id, one.lift.id), ""),
-        cells=tuple(_cell(attempts, number, one.lift.step) for number in sorted(attempts)),
-        best="" if best is None else show_mass(best),
-        lifter_id=lifter.id,
-        withdrawn=lifter.withdrawn,
-        may_have_fourth=one.programme.rules.fourth_for_record
-        and 4 not in attempts
-        and 3 in attempts
-        and attempts[3].result is not Result.OPEN,
-    )
-
-
-def _cell(attempts: dict[int, Attempt], number: int, step: Fraction) -> ScoreCell:
-    attempt = attempts[number]
-    before = attempts.get(number - 1)
-    default = default_weight(before, before.weight if before else None, step)
-    shown = show_mass(attempt.weight) if attempt.weight is not None else ""
-    if (
-        not shown
-        and default is not None
-        and attempt.result is Result.OPEN
-        and before
-        and before.result is not Result.OPEN
-    ):
-        shown = f"({show_mass(default)})"
-    lifted = attempt.result is not Result.OPEN
-    return ScoreCell(
-        attempt.id,
-        attempt.version,
-        shown,
-        RESULT_WORDS[attempt.result] if lifted else "",
-        attempt.result.value,
     )
