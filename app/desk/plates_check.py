@@ -89,18 +89,19 @@ def flights_openers(programme: Programme, lift_id: int) -> list[list[Fraction]]:
 
 
 def lendable_plates(now: Picture, others: list[Picture]) -> tuple[Plate, ...]:
-    """What could be borrowed: kinds of the meet's other platforms, then of the usual sets in this unit."""
+    """What could be borrowed: kinds of the meet's other platforms, then of the usual set that is most like this."""
     owned = {item.plate.face for item in now.stock}
     found: dict[Fraction, Plate] = {}
     for other in others:
         found |= {item.plate.face: item.plate for item in other.stock if item.plate.face not in owned}
-    for preset in PRESETS:
-        if preset.unit != now.unit:
-            continue
-        for plate in preset.plates:
-            face = Fraction(plate.face)
-            if face not in owned:
-                found.setdefault(face, Plate(face, 0, exact(plate.thickness_mm), exact(plate.diameter_mm)))
+    usual = [
+        {Fraction(plate.face): plate for plate in preset.plates}
+        for preset in PRESETS
+        if preset.unit == now.unit
+    ]
+    for face, plate in max(usual, key=lambda one: len(owned & one.keys()), default={}).items():
+        if face not in owned:
+            found.setdefault(face, Plate(face, 0, exact(plate.thickness_mm), exact(plate.diameter_mm)))
     return tuple(found.values())
 
 

@@ -6,6 +6,14 @@ sets are from memory (``figures.md`` 4.5, within about 3 mm); of the lb set the 
 (``figures.md`` 4.1, S58). How many of each: common practice for one platform (``trade.md`` C2, from memory).
 Bar 20 kg and collars 2.5 kg each: WDFPF 2007, WPC (bar and both collars 25 kg). Sleeve 415 mm: ``figures.md``
 V49; room that a competition collar takes, 50 mm: from memory.
+
+The bumper set. Men's bar 20 kg with 415 mm of sleeve, women's bar 15 kg with 320 mm, collars 2.5 kg each, so 25
+and 20 kg with nothing on; masses and colours of the discs (25 to 5, then 2.5, 2, 1.5, 1, 0.5); 450 mm for every
+disc of 10 kg and more: all second-hand reports of the IWF's rules (``figures.md`` 2, S39 to S46, V5, V49).
+Thickness of the bumpers, 65, 54, 42 and 32 mm: from memory, low confidence (``figures.md`` 4.5; a published range
+for rubber bumpers, 4.3, is thicker still). Sizes of the discs of 5 kg and less: from memory. How many: one pair of
+each and more 25s for heavier groups (``trade.md`` C2, from memory). Declared in steps of 1 kg (``figures.md`` 2,
+second-hand).
 """
 
 from __future__ import annotations
@@ -75,6 +83,19 @@ KG_STEEL = (
     PresetPlate("0.25", 2, "6", "112", STEEL),
 )
 
+KG_BUMPERS = (
+    PresetPlate("25", 6, "65", "450", RED),
+    PresetPlate("20", 2, "54", "450", BLUE),
+    PresetPlate("15", 2, "42", "450", YELLOW),
+    PresetPlate("10", 2, "32", "450", GREEN),
+    PresetPlate("5", 2, "27", "228", WHITE),
+    PresetPlate("2.5", 2, "19", "210", RED),
+    PresetPlate("2", 2, "19", "190", BLUE),
+    PresetPlate("1.5", 2, "18", "175", YELLOW),
+    PresetPlate("1", 2, "15", "160", GREEN),
+    PresetPlate("0.5", 2, "13", "134", WHITE),
+)
+
 LB_IRON = (
     PresetPlate("45", 14, "52", "450", BLACK),
     PresetPlate("35", 2, "44.5", "395", BLACK),
@@ -101,6 +122,18 @@ BAR_LIFTS = (
     PresetLift("Bench press", 0, "2.5"),
     PresetLift("Deadlift", 0, "2.5"),
 )
+
+RISING_BARS = (
+    PresetTool("Men's bar", "bar", "20", "415", "2.5", "50"),
+    PresetTool("Women's bar", "bar", "15", "320", "2.5", "50"),
+)
+
+
+def _rising(key: str, name: str, tool: int) -> Preset:
+    """Both bars stand there; which one the lifts begin with is the only difference."""
+    lifts = (PresetLift("Snatch", tool, "1"), PresetLift("Clean and jerk", tool, "1"))
+    return Preset(key, name, "kg", "rising-bar", "Rising bar", RISING_BARS, KG_BUMPERS, lifts)
+
 
 PRESETS = (
     Preset(
@@ -133,6 +166,8 @@ PRESETS = (
         BELT_KG,
         (PresetLift("Muscle-up", 0, "1.25"), PresetLift("Pull-up", 0, "1.25"), PresetLift("Dip", 0, "1.25")),
     ),
+    _rising("rising-men", "Snatch, clean and jerk: kg bumpers, men's bar 20 kg", 0),
+    _rising("rising-women", "Snatch, clean and jerk: kg bumpers, women's bar 15 kg", 1),
 )
 
 

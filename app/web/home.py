@@ -12,7 +12,7 @@ from starlette.concurrency import run_in_threadpool
 from starlette.requests import Request
 from starlette.responses import Response
 
-from app.desk import setup, stock
+from app.desk import copying, setup, stock
 from app.desk.entry import Desk
 from app.desk.errors import DeskError
 from app.desk.owned import owned_pieces, placed
@@ -47,7 +47,16 @@ def home(request: Request, desk: DeskDep, official: OfficialDep) -> Response:
 
 
 def _render_home(
-    request: Request, desk: Desk, official: str, *, refused: str = "", typed: str = "", unit: str = "kg"
+    request: Request,
+    desk: Desk,
+    official: str,
+    *,
+    refused: str = "",
+    typed: str = "",
+    unit: str = "kg",
+    copy_refused: str = "",
+    copy_of: int = 0,
+    copy_name: str = "",
 ) -> Response:
     with reading(desk.engine) as session:
         meets = [
@@ -55,14 +64,33 @@ def _render_home(
         ]
     return page(
         "home/page.html",
-        422 if refused else 200,
+        422 if refused or copy_refused else 200,
         frame=frame("Platewright", official),
         layout=htmx.layout(request),
         meets=meets,
         refused=refused,
         typed=typed,
         unit=unit,
+        copy_refused=copy_refused,
+        copy_of=copy_of,
+        copy_name=copy_name,
     )
+
+
+@router.post("/meets/copy")
+def copy_meet(
+    request: Request,
+    desk: DeskDep,
+    official: OfficialDep,
+    meet: Annotated[int, Form()],
+    name: Annotated[str, Form()] = "",
+) -> Response:
+    """A new meet set up like an earlier one."""
+    try:
+        made = copying.copy_meet(desk, meet, name, who=who(official, "director"))
+    except DeskError as refused:
+        return _render_home(request, desk, official, copy_refused=str(refused), copy_of=meet, copy_name=name)
+    return htmx.go_to(request, f"/meets/{made}")
 
 
 @router.post("/meets")
