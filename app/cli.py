@@ -17,11 +17,11 @@ from sqlalchemy.exc import SQLAlchemyError
 from app.desk.demo import make_demo
 from app.desk.entry import Desk
 from app.desk.hub import QuietHub
-from app.desk.plan_text import answers
+from app.desk.plan_text import MEMORY_MB, SECONDS, answers, watched
 from app.desk.roster import meet_ids, pictures
 from app.store.engine import make_engine, reading
 from app.store.migrate import upgrade
-from app.web.house import PROJECT
+from app.web.house import PROJECT, frame
 from app.web.main import create_app, utc_now
 
 GRACE_S = 2  # an open stream would keep the server alive; after this it is ended
@@ -47,6 +47,7 @@ def _parser() -> argparse.ArgumentParser:
     serve.set_defaults(run=_serve)
     plan = commands.add_parser("plan", help="answer a planner's request: one JSON object, or one a line")
     plan.add_argument("file", metavar="FILE", help="the request, or - for standard input")
+    _limits(plan)
     plan.set_defaults(run=_plan)
     return parser
 
@@ -62,6 +63,19 @@ def _serving(parser: argparse.ArgumentParser, folder: str) -> None:
         default=Path.home() / folder,
         metavar="FOLDER",
         help=f"where the meet is kept (~/{folder})",
+    )
+
+
+def _limits(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument(
+        "--plan-seconds", type=float, default=SECONDS, help=f"the longest a plan may take (default: {SECONDS:g})"
+    )
+    parser.add_argument(
+        "--plan-memory",
+        type=int,
+        default=MEMORY_MB,
+        metavar="MB",
+        help=f"and the most memory (default: {MEMORY_MB} MB)",
     )
 
 
@@ -94,7 +108,7 @@ def _run(chosen: argparse.Namespace, *, demo: bool) -> int:
     logging.getLogger("alembic").setLevel(logging.WARNING)
     logging.basicConfig(level=logging.INFO, format="%(asctime)s %(name)s %(levelname)s %(message)s")
     uvicorn.run(
-        create_app(url),
+        create_app(url, plan_budget=watched(chosen.plan_seconds, chosen.plan_memory)),
         host=chosen.host,
         port=chosen.port,
         timeout_graceful_shutdown=GRACE_S,
@@ -134,19 +148,10 @@ def _say_addresses(desk: Desk, host: str, port: int, folder: Path) -> None:
     lines = [f"Platewright keeps its meet in {folder}", f"  Start           {base}/"]
     with reading(desk.engine) as session:
         for meet_id in meet_ids(session):
-            seen = pictures(session, meet_id)
-            lines.append(f"  Roster          {base}/meets/{meet_id}/roster")
-            for now in seen:
-                lines.append(f"  {now.platform}")
-                lines += [
-                    f"    {title:<13} {base}/platforms/{now.platform_id}/{path}"
-                    for title, path in (
-                        ("Table", "table"),
-                        ("Crew", "crew"),
-                        ("Cards", "cards"),
-                        ("Equipment", "equipment"),
-                    )
-                ]
+            for now in pictures(session, meet_id):
+                lines.append(f"  {now.meet}, {now.platform}")
+                links = frame(now.meet, "", meet_id, now.platform_id).links
+                lines += [f"    {link.text:<13} {base}{link.href}" for link in links]
     lines.append("Stop with Ctrl+C. Nothing is lost: everything entered is on the disk already.")
     print("\n".join(lines), flush=True)
 
@@ -157,7 +162,8 @@ def _plan(chosen: argparse.Namespace) -> int:
     except (OSError, UnicodeDecodeError) as error:
         return _fail(f"{chosen.file} cannot be read: {error}")
     status = 0
-    for line, good in answers(text):
+    budget = watched(chosen.plan_seconds, chosen.plan_memory)
+    for line, good in answers(text, budget):
         print(line, flush=True)
         status = status if good else 2
     return status

@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import json
+import time
 from collections.abc import Iterator
 
-from app.planning import Refusal, answer_line, read_json
+from app.planning import Budget, Refusal, answer_line, read_json
 
 MOST_LINES = 10_000
+SECONDS, MEMORY_MB = 20.0, 400
 
 
 def questions(text: str) -> list[str]:
@@ -22,8 +24,13 @@ def questions(text: str) -> list[str]:
     return lines[:MOST_LINES]
 
 
-def answers(text: str) -> Iterator[tuple[str, bool]]:
+def watched(seconds: float = SECONDS, memory_mb: int = MEMORY_MB) -> Budget:
+    """What one plan may take: what cannot be proved within it is answered with the best plan and a bound."""
+    return Budget(memory_bytes=memory_mb * 1_000_000, seconds=seconds, monotonic=time.monotonic)
+
+
+def answers(text: str, budget: Budget | None = None) -> Iterator[tuple[str, bool]]:
     """One line of answer for each request, and whether it was answered rather than refused."""
     for question in questions(text):
-        document, good = answer_line(question)
+        document, good = answer_line(question, budget or watched())
         yield json.dumps(document, ensure_ascii=False), good

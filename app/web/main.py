@@ -21,6 +21,7 @@ from app.desk.entry import Clock, Desk
 from app.desk.errors import DeskError
 from app.desk.hub import MemoryHub
 from app.desk.improve import Improver
+from app.desk.plan_text import watched
 from app.planning import Budget
 from app.store.engine import make_engine
 from app.store.migrate import upgrade
@@ -65,7 +66,7 @@ def utc_now() -> datetime:
     return datetime.now(UTC)
 
 
-def create_app(database_url: str, clock: Clock = utc_now) -> FastAPI:
+def create_app(database_url: str, clock: Clock = utc_now, plan_budget: Budget | None = None) -> FastAPI:
     """The app over one database, brought up to date at start."""
 
     @asynccontextmanager
@@ -81,6 +82,7 @@ def create_app(database_url: str, clock: Clock = utc_now) -> FastAPI:
         engine.dispose()
 
     app = FastAPI(title="Platewright", lifespan=lifespan, docs_url=None, redoc_url=None)
+    app.state.plan_budget = plan_budget or watched()
     app.mount("/static", StaticFiles(directory=PROJECT / "static"), name="static")
     for router in (
         home,

@@ -23,7 +23,8 @@ async def plan_route(request: Request) -> Response:
             because = "The request is larger than 2 MB."
             return JSONResponse({"error": {"code": "bad-request", "because": because}}, status_code=413)
     # Planning is work for a processor: it must not hold up the streams of the other pages.
-    made = await run_in_threadpool(lambda: list(answers(data.decode("utf-8", errors="replace"))))
+    text, budget = data.decode("utf-8", errors="replace"), request.app.state.plan_budget
+    made = await run_in_threadpool(lambda: list(answers(text, budget)))
     return Response(
         "\n".join(line for line, _ in made) + "\n",
         status_code=200 if all(good for _, good in made) else 422,
