@@ -6,7 +6,8 @@ from datetime import UTC, date, datetime, time, timedelta
 
 from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
-from app.desk.flights import flight_rows, meet_flight_names, new_flight, remove_row
+from app.desk.flight_names import flight_rows, meet_flight_names
+from app.desk.flights import new_flight, remove_row
 from app.desk.setup import checked_name
 from app.meet.model import Lifter
 from app.store.picture import Picture, get

@@ -11,6 +11,7 @@ from sqlmodel import Session, col, select
 
 from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
+from app.desk.flight_names import flight_rows, free_name
 from app.desk.planned import wish_of
 from app.desk.plates_check import flights_openers
 from app.desk.wish import plan_request
@@ -21,7 +22,7 @@ from app.meet.model import Flight, Result
 from app.planning import Budget
 from app.store.engine import reading
 from app.store.picture import NotFound, Picture, get, key, picture
-from app.store.tables import FlightRow, LifterRow, PlatformRow, SessionRow
+from app.store.tables import FlightRow, LifterRow, SessionRow
 
 LIFTED = (Result.GOOD, Result.MISSED)
 WAYS = {"opener": "By opener", "class": "By body-weight class"}
@@ -190,37 +191,16 @@ def _make(work: Work, session_id: int, flights: Flights) -> str:
     return ", ".join(f"{row.name} {len(ids)}" for row, ids in zip(kept, flights, strict=True))
 
 
-def flight_rows(session: Session, session_id: int) -> list[FlightRow]:
-    """The session's flights in their order."""
-    query = select(FlightRow).where(FlightRow.session_id == session_id)
-    return list(session.exec(query.order_by(col(FlightRow.position), col(FlightRow.id))).all())
-
-
 def _lifters(session: Session, flight_ids: list[int]) -> list[LifterRow]:
     return list(session.exec(select(LifterRow).where(col(LifterRow.flight_id).in_(flight_ids))).all())
 
 
 def new_flight(work: Work, session_id: int, position: int) -> FlightRow:
     """Another flight, named by the first letter that no flight of the meet has."""
-    taken = {name.casefold() for name in meet_flight_names(work.session, work.meet_id).values()}
-    letters = [f"Flight {letter}" for letter in "ABCDEFGHIJKLMNOPQRSTUVWXYZ"]
-    numbers = (f"Flight {number}" for number in range(27, 1000))
-    name = next(one for one in (*letters, *numbers) if one.casefold() not in taken)
-    row = FlightRow(session_id=session_id, name=name, position=position)
+    row = FlightRow(session_id=session_id, name=free_name(work.session, work.meet_id), position=position)
     work.session.add(row)
     work.session.flush()
     return row
-
-
-def meet_flight_names(session: Session, meet_id: int) -> dict[int, str]:
-    """Every flight of the meet, all platforms together."""
-    query = (
-        select(FlightRow)
-        .join(SessionRow, col(SessionRow.id) == FlightRow.session_id)
-        .join(PlatformRow, col(PlatformRow.id) == SessionRow.platform_id)
-        .where(PlatformRow.meet_id == meet_id)
-    )
-    return {key(row): row.name for row in session.exec(query)}
 
 
 def remove_row(work: Work, row: FlightRow) -> None:

@@ -9,6 +9,7 @@ from sqlmodel import Session, col, select
 
 from app.desk.entry import Desk, Work, meet_entry
 from app.desk.errors import WrongRoster
+from app.desk.flight_names import flight_rows, free_name
 from app.loading.equipment import Equipment
 from app.meet.declare import Refused, decide
 from app.meet.model import ROUNDS, Attempt, Result
@@ -137,17 +138,17 @@ class _Lines:
         self.by_lot = {row.lot: row for row in rows}
 
     def take(self, entry: Entry) -> list[str]:
-        session_id = self.sessions.of(entry.platform, entry.flight, list(entry.openers))
-        if session_id is None:
-            return [
-                f"it is not clear where flight “{entry.flight}” lifts. Add a column “platform” that names it."
-            ]
         row = self.by_lot.get(entry.lot)
+        flight = entry.flight or self._standing(row)
+        session_id = self.sessions.of(entry.platform, flight, list(entry.openers))
+        if session_id is None:
+            who = f"flight “{flight}”" if flight else entry.name
+            return [f"it is not clear where {who} lifts. Add a column “platform” that names it."]
         if row is not None and row.name != entry.name:
             return [
                 f"lot {entry.lot} is already {row.name}. Take a free lot number, or write the name the same."
             ]
-        flight_id = self._flight(session_id, entry.flight)
+        flight_id = self._flight(session_id, flight or self._first(session_id))
         if row is None:
             row = LifterRow(meet_id=self.work.meet_id, flight_id=flight_id, name=entry.name, lot=entry.lot)
             self.work.session.add(row)
@@ -159,6 +160,15 @@ class _Lines:
             row.body_weight = entry.body_weight
         self.work.session.flush()
         return self._lifts(row, session_id, entry)
+
+    def _standing(self, row: LifterRow | None) -> str:
+        """Where a lifter that is here already lifts."""
+        return "" if row is None else self.work.session.get_one(FlightRow, row.flight_id).name
+
+    def _first(self, session_id: int) -> str:
+        """Where a lifter goes whom nobody has placed: the session's first flight, to be parted on the Flights page."""
+        rows = flight_rows(self.work.session, session_id)
+        return rows[0].name if rows else free_name(self.work.session, self.work.meet_id)
 
     def _flight(self, session_id: int, name: str) -> int:
         place = (session_id, name.casefold())

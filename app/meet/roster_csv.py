@@ -1,7 +1,8 @@
 """The roster as a CSV file: read strictly, every wrong line named, written back the same way.
 
-Columns: ``name``, ``lot``, ``flight`` are needed; ``platform``, ``body weight`` and, for each lift,
-``<lift> opener`` and ``<lift> rack`` may follow in any order. The platform is only needed where flight and
+Columns: ``name`` and ``lot`` are needed; ``flight``, ``platform``, ``body weight`` and, for each lift,
+``<lift> opener`` and ``<lift> rack`` may follow in any order. Without a flight column nobody has been placed
+yet; where there is one, every line fills it. The platform is only needed where flight and
 lifts do not tell where somebody lifts. Comma, semicolon or tab; a decimal comma is read where the columns
 are not separated by commas.
 """
@@ -17,14 +18,17 @@ from fractions import Fraction
 from app.loading.mass import show_mass
 from app.meet.declare import Refused, read_weight, sentence
 
-NEEDED = ("name", "lot", "flight")
+NEEDED = ("name", "lot")
 MOST_LINES = 2000
 MOST_LETTERS = 80
 
 
 @dataclass(frozen=True, slots=True)
 class Entry:
-    """One line of the roster, by its number in the file. ``openers`` and ``racks`` go by the lift's name."""
+    """One line of the roster, by its number in the file. ``openers`` and ``racks`` go by the lift's name.
+
+    ``flight`` is "" where the roster has no such column.
+    """
 
     name: str
     lot: int
@@ -137,7 +141,10 @@ def _rows(text: str) -> list[tuple[int, list[str]]]:
 
 
 def _read_header(header: Sequence[str], lifts: Sequence[str], columns: dict[str, int]) -> list[WrongLine]:
-    known = {name.casefold(): name for name in (*NEEDED, "platform", "body weight", *_lift_columns(lifts))}
+    known = {
+        name.casefold(): name
+        for name in (*NEEDED, "flight", "platform", "body weight", *_lift_columns(lifts))
+    }
     wrong: list[WrongLine] = []
     for place, title in enumerate(header):
         name = known.get(" ".join(title.split()).casefold())
@@ -174,7 +181,7 @@ class _Line:
         if len(self.cells) > len(self.columns):
             self.complain(f"{len(self.cells)} fields, but there are {len(self.columns)} columns.")
             return None
-        name, flight = self._text("name"), self._text("flight")
+        name, flight = self._text("name"), self._text("flight") if "flight" in self.columns else ""
         platform = _bare(self.cell("platform"))
         self._check_length("platform", platform)
         lot = self._lot()

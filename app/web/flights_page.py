@@ -14,7 +14,8 @@ from app.desk import flight_changes, flights
 from app.desk.entry import Desk
 from app.desk.errors import DeskError
 from app.desk.flight_changes import show_start
-from app.desk.flights import LIFTED, Asked, flight_rows
+from app.desk.flight_names import flight_rows
+from app.desk.flights import LIFTED, Asked
 from app.planning import Budget
 from app.store.engine import reading
 from app.store.picture import picture

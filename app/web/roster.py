@@ -61,6 +61,7 @@ def _render(
         entries=entries,
         show=show_mass,
         has_platform=bool(seen),
+        platforms=[(now.platform_id, now.platform) for now in seen],
         header=",".join(
             ["name", "lot", "flight", "platform", "body weight"]
             + [f"{lift} {what}" for lift in lifts for what in ("opener", "rack")]

@@ -8,12 +8,13 @@ from fractions import Fraction
 
 import pytest
 
-from app.desk.errors import NotAllowedNow, SomebodyWasFirst
+from app.desk.errors import NotAllowedNow, SomebodyWasFirst, WrongRoster
 from app.desk.flight_changes import move_lifter, read_start, remove_flight, save_flight, show_start
 from app.desk.flights import Asked, flights_seen, proposals, read_limits, take_proposal
 from app.desk.planned import wish_of
 from app.desk.roster import import_roster
 from app.desk.rule_book import save_rules
+from app.desk.setup import add_platform
 from app.desk.undo import redo, undo
 from app.desk.wish import plan_request
 from app.meet.rule_reading import rules_document
@@ -41,6 +42,7 @@ from tests.cast import (
 from tests.desk.checks import changes, check_board, differing, refused, rows
 
 LIMITS = "66, 74, 83, 93"
+UNPLACED = "name,lot,Squat opener\nAda Brook,3,100\nBo Carver,1,110\nCleo Dahl,2,115\n"
 
 
 @pytest.fixture
@@ -219,6 +221,42 @@ def test_under_a_loaded_bar_no_proposal_moves_its_lifter(hall: Hall) -> None:
     assert "Flight A 2" in hall_take
     assert hall.attempt(ADA, 1).id == (hall.picture().bar.hand.attempt_id if hall.picture().bar.hand else 0)
     assert {table for table, _ in differing(before, rows(hall.desk.engine))} == {"flight", "lifter"}
+
+
+# A roster in which nobody has been placed
+
+
+def test_a_roster_without_flights_puts_everybody_into_one_to_be_parted_here(desk) -> None:
+    hall = bare_meet(desk)
+    import_roster(desk, hall.meet_id, UNPLACED, who=OLGA)
+    assert who_is_where(hall) == {FLIGHT_A: {ADA, BO, CLEO}}
+    most(hall, 2)
+    take(hall)
+    assert who_is_where(hall) == {FLIGHT_A: {ADA, BO}, FLIGHT_B: {CLEO}}
+
+
+def test_the_same_roster_again_leaves_everybody_where_they_have_been_put(desk) -> None:
+    hall = bare_meet(desk)
+    import_roster(desk, hall.meet_id, UNPLACED, who=OLGA)
+    move(hall, CLEO, "new")
+    import_roster(desk, hall.meet_id, UNPLACED, who=OLGA)
+    assert who_is_where(hall) == {FLIGHT_A: {ADA, BO}, FLIGHT_B: {CLEO}}
+
+
+def test_where_two_platforms_lift_the_same_the_roster_must_say_which(desk) -> None:
+    hall = bare_meet(desk)
+    add_platform(desk, hall.meet_id, "Stage", "bar-kg", who=OLGA)
+    with pytest.raises(WrongRoster) as told:
+        import_roster(desk, hall.meet_id, UNPLACED, who=OLGA)
+    assert told.value.wrong[0] == (
+        2,
+        "it is not clear where Ada Brook lifts. Add a column “platform” that names it.",
+    )
+    placed = UNPLACED.replace("lot,", "lot,platform,", 1)
+    for lot in (3, 1, 2):
+        placed = placed.replace(f",{lot},", f",{lot},Stage,")
+    import_roster(desk, hall.meet_id, placed, who=OLGA)
+    assert Hall(desk, hall.meet_id, 2).picture().sessions[0][2].flights[0].name == FLIGHT_A
 
 
 # One lifter

@@ -140,11 +140,16 @@ def test_everything_wrong_is_told_at_once_and_nothing_is_taken() -> None:
 
 def test_wrong_columns_are_told_all_at_once() -> None:
     known = "name, lot, flight, platform, body weight, Squat opener, Squat rack, Bench press opener, Bench press rack"
-    assert wrong("Ada,3,x,y", header="name,name,Curl opener,lot") == [
+    assert wrong("Ada,3,x,y", header="name,name,Curl opener,flight") == [
         (1, "column “name” stands twice."),
         (1, f"unknown column “Curl opener”. Known columns: {known}."),
-        (1, "column “flight” is missing."),
+        (1, "column “lot” is missing."),
     ]
+
+
+def test_without_a_flight_column_nobody_has_been_placed_yet() -> None:
+    (entry,) = read("name,lot\nAda Brook,3").entries
+    assert entry.flight == ""
 
 
 def test_an_empty_roster_and_one_without_lifters_say_so() -> None:
