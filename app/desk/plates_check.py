@@ -21,8 +21,8 @@ from app.store.engine import reading
 from app.store.picture import NotFound, Picture, get, picture
 from app.store.tables import PlatformRow
 
-Elsewhere = Mapping[Fraction, tuple[tuple[str, int], ...]]
-"""By face: the other platforms of the meet that have such plates, and how many pieces."""
+Elsewhere = Mapping[Fraction, tuple[tuple[int, str, int], ...]]
+"""By face: the other platforms of the meet that have such plates (id and name), and how many pieces."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -106,11 +106,11 @@ def lendable_plates(now: Picture, others: list[Picture]) -> tuple[Plate, ...]:
 
 
 def _elsewhere(others: list[Picture]) -> Elsewhere:
-    found: dict[Fraction, tuple[tuple[str, int], ...]] = {}
+    found: dict[Fraction, tuple[tuple[int, str, int], ...]] = {}
     for other in others:
         for item in other.stock:
             if item.plate.count:
-                place = (other.platform, item.plate.count)
+                place = (other.platform_id, other.platform, item.plate.count)
                 found[item.plate.face] = (*found.get(item.plate.face, ()), place)
     return found
 

@@ -35,7 +35,7 @@ class LiftRow:
     openers: int
     will_do: bool
     said: tuple[str, ...]
-    elsewhere: tuple[str, ...]  # where in this meet the plates that are short stand
+    elsewhere: tuple[tuple[int, str], ...]  # at which platforms the plates that are short stand, in words
     refused: str
 
 
@@ -67,9 +67,9 @@ def _row(found: PlatformCheck, one: LiftCheck) -> LiftRow:
         will_do=check is not None and not check.missing,
         said=sentences(check, now.unit, tool.implement.ends) if check else (),
         elsewhere=tuple(
-            f"{place} has {count} of the {show_mass(short.face)}s."
+            (platform_id, f"{place} has {count} of the {show_mass(short.face)}s.")
             for short in (check.shortages if check else ())
-            for place, count in found.elsewhere.get(short.face, ())
+            for platform_id, place, count in found.elsewhere.get(short.face, ())
         ),
         refused=one.refused,
     )

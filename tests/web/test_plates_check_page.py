@@ -64,3 +64,13 @@ def test_without_a_roster_the_page_sends_to_it(new_client: TestClient) -> None:
 def test_a_platform_or_lift_that_is_not_there_is_not_found(client: TestClient) -> None:
     assert client.get("/platforms/99/plates-check").status_code == 404
     assert client.get(f"{PAGE}/999/borrow").status_code == 404
+
+
+def test_lending_is_offered_where_the_plates_stand(client: TestClient) -> None:
+    out = {"out": "1.25"}
+    for _ in range(4):
+        chosen = form(get(client, "/platforms/1/equipment"), "/plates")
+        assert client.post("/platforms/1/equipment/out", data=chosen.fields | out).status_code == 200
+    links = {one.attrs["href"] for one in get(client, PAGE).all("a") if one.text == "Lend from there"}
+    assert links == {"/platforms/2/equipment#lend"}
+    assert form(get(client, "/platforms/2/equipment"), "/lend").fields["to"] == ["1"]
