@@ -37,6 +37,7 @@
     let announced = null;
     let announcedAt = heard;
     let askedAt = 0;
+    let connected = true;
 
     const shown = () => document.querySelector("[data-revision]")?.dataset.revision ?? null;
     const note = () => { heard = Date.now(); look(); };
@@ -60,6 +61,11 @@
       else if (behind) text = `There is news since ${clock(announcedAt)} that could not be fetched. What you see is old.`;
       if (band.textContent !== text) band.textContent = text; // an unchanged alert is not read out again
       band.hidden = text === "";
+      const hears = now - heard <= QUIET_LIMIT_MS;
+      if (hears !== connected) {
+        connected = hears;
+        document.dispatchEvent(new CustomEvent("platewright:connection", { detail: { connected } }));
+      }
       if (behind && now - heard <= QUIET_LIMIT_MS && now - askedAt > ASK_AGAIN_MS) {
         askedAt = now;
         live.dispatchEvent(new CustomEvent("revision")); // every region asks for its fragment again

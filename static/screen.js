@@ -17,8 +17,10 @@
   const sheet = new CSSStyleSheet(); // no inline style: the page's content policy stays strict
   document.adoptedStyleSheets = [...document.adoptedStyleSheets, sheet];
   function tellSizes() {
-    sheet.replaceSync(`:root { --mm: ${perMm()}px; --digit: ${need()}px; }`);
+    const ruler = [100, 50, 20].find((mm) => mm * perMm() < innerWidth * 0.86) || 10;
+    sheet.replaceSync(`:root { --mm: ${perMm()}px; --digit: ${need()}px; --ruler: ${ruler}; }`);
     root.dataset.measured = "";
+    for (const place of document.querySelectorAll("[data-ruler]")) place.textContent = `${ruler} mm`;
   }
 
   const visible = (element) => element.getClientRects().length > 0;
@@ -90,10 +92,11 @@
     if (verdict) judge(verdict);
   }
 
-  /* Before the meet: what a change of three plates can be on this screen, three lines of digits being its height. */
+  /* Before the meet: how far a change of three plates can be read: three lines of digits are the
+     height, and three plates of two digits the width (as the crew's screen lays them out at its sparest). */
   function judge(verdict) {
     const wide = Math.max(screen.width, screen.height), high = Math.min(screen.width, screen.height);
-    const most = Math.min(high / 3.7, wide / 5.6) / perMm() / MM_PER_M;
+    const most = Math.min(high / 3.7, wide / 8.6) / perMm() / MM_PER_M;
     const words = `${Math.floor(most * 10) / 10} m`;
     verdict.textContent = most < distance * TOLERANCE
       ? `This screen is too small for ${distance} m. A change of three plates off and three on can be read from ${words}. Bring it nearer, or use a larger one.`
@@ -102,6 +105,7 @@
 
   addEventListener("resize", look);
   document.addEventListener("htmx:after:swap", look);
+  document.addEventListener("platewright:shown", look);
   document.fonts?.ready.then(look);
   if (document.readyState === "loading") document.addEventListener("DOMContentLoaded", look); else look();
 })();

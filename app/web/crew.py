@@ -12,6 +12,8 @@ from app.desk import bar
 from app.desk.board import Bare, board
 from app.desk.entry import Desk
 from app.web import htmx
+from app.web.crew_ahead import ahead_views
+from app.web.crew_roles import alone_view
 from app.web.crew_view import bare_crew_view, crew_view
 from app.web.house import DeskDep, OfficialDep, frame, page, who
 from app.web.languages import words_in
@@ -34,7 +36,18 @@ def _screen(request: Request, desk: Desk, platform_id: int, official: str) -> Re
     name = "crew/_now.html" if htmx.wants_fragment(request) else "crew/page.html"
     around = frame(one.now.meet, official, one.now.meet_id, platform_id, "Crew")
     view = bare_crew_view(one.now, words.say) if isinstance(one, Bare) else crew_view(one, words.say)
-    return page(name, 200, frame=around, view=view, screen=screen, **words.context())
+    alone = alone_view(one, view) if screen.role == "alone" and not isinstance(one, Bare) else None
+    return page(name, 200, frame=around, view=view, screen=screen, alone=alone, **words.context())
+
+
+@router.get("/crew/ahead")
+def show_ahead(request: Request, platform_id: int, desk: DeskDep) -> Response:
+    """The next changes as whole screens, for the crew to go on by hand when the network goes."""
+    one = board(desk, platform_id)
+    screen = the_screen(request)
+    words = words_in(screen.language)
+    ahead = () if isinstance(one, Bare) else ahead_views(one, words.say)
+    return page("crew/_ahead.html", 200, ahead=ahead, screen=screen, **words.context())
 
 
 @router.post("/loaded")

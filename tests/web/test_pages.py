@@ -23,13 +23,15 @@ PAGES = {
     "/platforms/1/cards": "Cards, Main hall",
     "/platforms/1/cards/1/1/2": "Card, Flight A · Squat · round 2",
     "/platforms/1/join": "Join, Main hall",
+    "/platforms/1/missing": "Don't have a plate?",
     "/platforms/1/chart/1": "Loading chart, Squat",
     "/platforms/1/checklist": "Set-up, Main hall",
     "/platforms/1/equipment": "Equipment, Main hall",
 }
 # Walls without navigation, and pages that are reached from others.
 WALLS = tuple(
-    f"/platforms/1/{name}" for name in ("crew", "check", "announcer", "screen", "chart/1", "checklist")
+    f"/platforms/1/{name}"
+    for name in ("crew", "check", "announcer", "screen", "chart/1", "checklist", "missing")
 )
 FILES = {
     "/meets/1/roster.csv",
@@ -37,6 +39,7 @@ FILES = {
     "/platforms/1/chart/1/pdf",
     "/platforms/1/checklist/pdf",
     "/platforms/1/join/crew.svg",
+    "/platforms/1/crew/ahead",
 }
 STREAMS = {"/platforms/1/events"}
 POSTS = (
@@ -54,6 +57,7 @@ POSTS = (
     "/platforms/1/table-bar",
     "/platforms/1/loaded",
     "/platforms/1/screen",
+    "/platforms/1/missing",
     "/platforms/1/bar",
     "/api/plan",
 )
