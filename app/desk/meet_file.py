@@ -12,6 +12,7 @@ from sqlmodel import Session, col, select
 
 from app.desk.entry import Desk
 from app.desk.errors import NotAllowedNow
+from app.desk.meet_check import check_meet
 from app.desk.roster import pictures
 from app.desk.settle import settle
 from app.loading.mass import show_mass
@@ -48,6 +49,7 @@ def import_meet(desk: Desk, text: str) -> int:
     with writing(desk.engine) as session:
         try:
             meet_id = load_meet(session, text)
+            check_meet(session, meet_id)
         except WrongMeetFile as wrong:
             raise NotAllowedNow(f"{wrong} Nothing was taken in.") from wrong
         for row in session.exec(select(PlatformRow).where(PlatformRow.meet_id == meet_id)).all():
@@ -116,7 +118,7 @@ def as_csv(columns: Sequence[str], rows: Sequence[dict[str, Any]]) -> str:
 
 
 def _cell(value: object) -> object:
-    return f"'{value}" if isinstance(value, str) and value[:1] in tuple("=+-@") else value
+    return f"'{value}" if isinstance(value, str) and value[:1] in tuple("=+-@\t\r") else value
 
 
 def as_json(rows: Sequence[dict[str, Any]]) -> str:

@@ -14,7 +14,7 @@ from typing import Any, cast
 
 from pydantic import ValidationError
 from sqlalchemy import Table, func
-from sqlalchemy.exc import IntegrityError
+from sqlalchemy.exc import IntegrityError, InterfaceError, OperationalError, ProgrammingError, StatementError
 from sqlmodel import Session, col, select
 
 from app.loading.mass import parse_mass
@@ -36,6 +36,7 @@ from app.store.tables import (
 )
 
 FORMAT = 1
+MOST_WORDS = 120
 ALL: dict[str, type[Row]] = TABLES | {"journal": JournalRow}
 LEFT_OUT = {"platform": {"plan"}}
 # References that no foreign key declares: two point in a circle, one is the journal's own.
@@ -48,6 +49,21 @@ HIDDEN_KEYS = {
 
 Numbers = dict[str, dict[int, int]]
 """By table: the id in the database → the number in the document."""
+
+
+# What pydantic, SQLite and we ourselves say to values that no row can have.
+DAMAGED = (
+    ValidationError,
+    IntegrityError,
+    InterfaceError,
+    ProgrammingError,
+    StatementError,
+    TypeError,
+    ValueError,
+    KeyError,
+    AttributeError,
+    ArithmeticError,
+)
 
 
 class WrongMeetFile(ValueError):
@@ -158,15 +174,19 @@ def load_meet(session: Session, text: str) -> int:
             for values in tables[name]:
                 session.add(_made(name, values, numbers))
             session.flush()
-    except (ValidationError, IntegrityError, TypeError, ValueError, KeyError, AttributeError) as error:
+    except OperationalError:
+        raise  # the disk, not the file
+    except DAMAGED as error:
         if isinstance(error, WrongMeetFile):
             raise
-        raise WrongMeetFile(f"The file is damaged in its table “{name}”: {_first_line(error)}.") from error
+        raise WrongMeetFile(f"The file is damaged in its table “{name}”{_because(error)}.") from error
     return numbers["meet"][tables["meet"][0]["row"]]
 
 
-def _first_line(error: Exception) -> str:
-    return str(error).splitlines()[0][:120] if str(error) else type(error).__name__
+def _because(error: Exception) -> str:
+    """Our own readers say what is wrong in words; what a library says is for its programmers."""
+    words = str(error).rstrip(".")
+    return f": {words}" if type(error) is ValueError and len(words) < MOST_WORDS and "\n" not in words else ""
 
 
 def _read(text: str) -> dict[str, list[dict[str, Any]]]:

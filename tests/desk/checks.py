@@ -72,7 +72,11 @@ def replayed(entries: Sequence[JournalRow]) -> Rows:
 
     Each edit's *before* must be what the row is at that moment: the journal has no gaps.
     """
-    made: Rows = {}
+    return replay_on({}, entries)
+
+
+def replay_on(made: Rows, entries: Sequence[JournalRow]) -> Rows:
+    """The same from rows that earlier entries have made already; they are changed in place."""
     for entry in entries:
         for edit in entry.edits:
             place = (edit["table"], edit["id"])

@@ -366,7 +366,7 @@ def test_one_end_is_asked_for_of_a_belt(belt: Hall) -> None:
     belt.lift("Kofi Lund", 1, lift=lift)
     seen = belt.seen("Kofi Lund", 1, lift)
     found = misload.inquire(belt.desk, belt.platform_id, seen, ("5 2.5",), "bar")
-    assert (found.ends, [one.words for one in found.remedies][0]) == (
+    assert (found.ends, next(one.words for one in found.remedies)) == (
         1,
         "The lifter keeps the good lift, recorded as 7.5 kg.",
     )

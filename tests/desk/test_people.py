@@ -170,9 +170,8 @@ def test_a_late_lifter_without_an_opener_is_named_and_hands_it_in(hall: Hall) ->
 
 def test_a_lifter_moved_to_the_flight_that_is_on_takes_the_place_of_their_weight(hall: Hall) -> None:
     hand = hall.picture().bar.hand
-    move_lifter(
-        hall.desk, hall.platform_id, hall.lifter(DOV).id, hall.flight_id(FLIGHT_B), str(hall.flight_id(FLIGHT_A)), who=OLGA
-    )  # fmt: skip
+    here, there = hall.flight_id(FLIGHT_B), str(hall.flight_id(FLIGHT_A))
+    move_lifter(hall.desk, hall.platform_id, hall.lifter(DOV).id, here, there, who=OLGA)
     assert hall.picture().bar.hand == hand
     assert (DOV, 1, kg(150)) in hall.order()
     check_board(hall.board())
@@ -180,10 +179,9 @@ def test_a_lifter_moved_to_the_flight_that_is_on_takes_the_place_of_their_weight
 
 def test_the_one_being_loaded_for_is_not_moved(hall: Hall) -> None:
     told = "The crew is loading for Ada Brook now. Move them after this lift, or pass the attempt first."
+    here, there = hall.flight_id(FLIGHT_A), str(hall.flight_id(FLIGHT_B))
     with refused(hall, NotAllowedNow, told):
-        move_lifter(
-            hall.desk, hall.platform_id, hall.lifter(ADA).id, hall.flight_id(FLIGHT_A), str(hall.flight_id(FLIGHT_B)), who=OLGA
-        )  # fmt: skip
+        move_lifter(hall.desk, hall.platform_id, hall.lifter(ADA).id, here, there, who=OLGA)
 
 
 # A fourth attempt
