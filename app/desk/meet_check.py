@@ -18,8 +18,8 @@ from app.desk.wish import plan_request, read_wish
 from app.loading.chart import loadable
 from app.loading.mass import parse_mass
 from app.meet.declare import HEAVIEST
-from app.meet.misload import RetakePlace
 from app.meet.model import Result
+from app.meet.rules import RetakePlace
 from app.planning import Refusal
 from app.store.journal import unplain
 from app.store.meet_file import WrongMeetFile, meet_rows
@@ -100,14 +100,14 @@ def _iron(rows: Mapping[str, Sequence[Row]]) -> Iterator[str]:
     if any(kinds.count(platform) > MOST_KINDS for platform in set(kinds)):
         yield f"there are more than {MOST_KINDS} kinds of plates at one platform"
     for tool in _of(rows, ImplementRow):
-        lengths = (tool.usable_mm, tool.collar_mass, tool.collar_width_mm)
+        collar = (tool.usable_mm, tool.collar_mass, tool.collar_width_mm)
         if (
             tool.kind not in ("bar", "belt")
             or not 0 <= tool.mass <= LONGEST_MM
             or not 1 <= tool.pieces <= MOST_PIECES
         ):
             yield "there is a bar or belt of no possible kind, mass or number"
-        if any(one is not None and not 0 <= one <= LONGEST_MM for one in lengths):
+        if any(one is not None and not 0 <= one <= LONGEST_MM for one in collar):
             yield "there is a bar or belt of no possible size"
 
 

@@ -396,14 +396,15 @@ def check_rising(one: Board) -> None:
             if mine == theirs and other is not turn and mine[1] == 1:
                 assert turn.lifter.lot < other.lifter.lot
             if mine == theirs and other is not turn and one.programme.rules.ties is Ties.SEQUENCE:
-                before = [ranks.get(_before(one, x).id) if _before(one, x) else None for x in (turn, other)]
-                if before[0] is not None and before[1] is not None:
-                    assert before[0] < before[1]
+                first, second = (ranks.get(_before(one, x)) for x in (turn, other))
+                if first is not None and second is not None:
+                    assert first < second
 
 
-def _before(one: Board, turn: Turn) -> Attempt | None:
+def _before(one: Board, turn: Turn) -> int:
+    """The id of the same lifter's attempt before; 0 for an opener."""
     wanted = (turn.lifter.id, turn.attempt.lift_id, turn.attempt.number - 1)
-    return next((a for a in one.programme.attempts if (a.lifter_id, a.lift_id, a.number) == wanted), None)
+    return next((a.id for a in one.programme.attempts if (a.lifter_id, a.lift_id, a.number) == wanted), 0)
 
 
 TestWholeMeet = WholeMeet.TestCase
