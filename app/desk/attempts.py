@@ -8,6 +8,7 @@ from fractions import Fraction
 
 from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import AgainstTheRules, NotAllowedNow
+from app.desk.hands_off import hands_off
 from app.desk.people import check_owner
 from app.desk.subject import Seen, Subject, at_words, find_subject, moment_of, stamp
 from app.loading.mass import show_mass
@@ -40,6 +41,9 @@ def declare(desk: Desk, platform_id: int, seen: Seen, text: str, reason: str = "
         attempt = subject.attempt
         if (attempt.weight, attempt.record) == (weight, record) and attempt.result is Result.OPEN:
             return f"{subject.name} stays at {show_mass(weight)}."
+        if subject.in_hand and subject.now.bar.condition is Condition.LIFTING and attempt.weight is not None:
+            # Said before any rule: no reason can change a bar that somebody stands under.
+            raise NotAllowedNow(hands_off(subject.lifter.name, show_mass(attempt.weight)))
         overridden = _judged(breaches_of(work, subject, weight, record), " ".join(reason.split()))
         was = "" if attempt.weight is None else f" (was {show_mass(attempt.weight)})"
         subject.row.changes += attempt.weight is not None and attempt.weight != weight

@@ -31,7 +31,12 @@ def check_hands_off(session: Session, edits: Iterable[Edit]) -> None:
         if attempt is None or attempt.result != Result.OPEN:
             continue
         lifter = session.get_one(LifterRow, attempt.lifter_id)
-        raise NotAllowedNow(
-            f"The bar is loaded for {lifter.name} at {hand['weight']}. Nothing may change on it now; "
-            "take “bar is loaded” back first if it is a mistake."
-        )
+        raise NotAllowedNow(hands_off(lifter.name, hand["weight"]))
+
+
+def hands_off(lifter: str, weight: str) -> str:
+    """The refusal, in words."""
+    return (
+        f"The bar is loaded for {lifter} at {weight}. Nothing may change on it now; "
+        "take “bar is loaded” back first if it is a mistake."
+    )

@@ -100,7 +100,8 @@ def test_every_line_of_every_card_adds_up(
         stack = faces(cell(row, "c-stack"))
         assert EMPTY[platform] + ENDS[platform] * sum(stack) == called(row)
         assert all(ENDS[platform] * n <= stock.get(face, 0) for face, n in Counter(stack).items())
-        assert list(stack) == sorted(stack, reverse=True)
+        if platform == 1:  # a belt's stack may stand in any order
+            assert list(stack) == sorted(stack, reverse=True)
         off, on = faces(cell(row, "c-off")), faces(cell(row, "c-on"))
         if bar is not None:
             assert bar[len(bar) - len(off) :] == tuple(reversed(off))

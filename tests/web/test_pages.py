@@ -27,7 +27,13 @@ PAGES = {
     "/platforms/1/chart/1": "Loading chart, Squat",
     "/platforms/1/checklist": "Set-up, Main hall",
     "/platforms/1/equipment": "Equipment, Main hall",
+    "/platforms/1/rules": "Rules, Saturday, bar lifts",
+    "/platforms/1/flights": "Flights, Saturday, bar lifts",
+    "/platforms/1/lifts/1": "Squat, Main hall",
+    "/platforms/1/plates-check": "Will the plates do? Main hall",
 }
+# Pages that stand under another one in the navigation.
+UNDER = {"/platforms/1/lifts/1": "/platforms/1/equipment", "/platforms/1/plates-check": "/platforms/1/equipment"}
 # Walls without navigation, and pages that are reached from others.
 WALLS = tuple(
     f"/platforms/1/{name}"
@@ -35,21 +41,51 @@ WALLS = tuple(
 )
 FILES = {
     "/meets/1/roster.csv",
+    "/meets/1/results.csv",
+    "/meets/1/results.json",
+    "/meets/1/journal.csv",
+    "/meets/1/journal.json",
+    "/meets/1/meet.json",
+    "/platforms/1/plates-check/1/borrow",
     "/platforms/1/cards/1/1/2/pdf",
     "/platforms/1/chart/1/pdf",
     "/platforms/1/checklist/pdf",
-    "/platforms/1/join/crew.svg",
     "/platforms/1/crew/ahead",
 }
 STREAMS = {"/platforms/1/events"}
+# Answers to a question that the page asks, and a picture by name.
+ASKED = {
+    "/platforms/1/ahead": "?attempt=1&version=0&weight=100",
+    "/platforms/1/misload": "?attempt=1&version=0",
+    "/platforms/1/flights/proposals": "?session=1",
+    "/platforms/1/lifts/1/figures": "?flight=1",
+    "/platforms/1/join/{page}": "",
+}
 POSTS = (
     "/meets",
+    "/meets/copy",
+    "/meets/file",
+    "/meets/1/owned",
     "/meets/1/platforms",
     "/official",
     "/meets/1/roster",
     "/platforms/1/equipment/plates",
     "/platforms/1/equipment/tools",
     "/platforms/1/equipment/lifts",
+    "/platforms/1/equipment/lend",
+    "/platforms/1/equipment/out",
+    "/platforms/1/flights/move",
+    "/platforms/1/flights/remove",
+    "/platforms/1/flights/save",
+    "/platforms/1/flights/take",
+    "/platforms/1/lifts/1",
+    "/platforms/1/lifts/1/choice",
+    "/platforms/1/lifts/1/ready",
+    "/platforms/1/rules",
+    "/platforms/1/misload",
+    "/platforms/1/lifter",
+    "/platforms/1/owner",
+    "/platforms/1/redo",
     "/platforms/1/weight",
     "/platforms/1/result",
     "/platforms/1/undo",
@@ -61,6 +97,7 @@ POSTS = (
     "/platforms/1/bar",
     "/api/plan",
 )
+MEET_FILES = ("/meets/copy", "/meets/file")  # their address looks like that of a meet
 NO_PAGE = "There is no such page here."
 
 
@@ -84,7 +121,9 @@ def _pattern(path: str) -> str:
 
 def test_these_tests_know_every_address_of_the_app() -> None:
     """A new page or action fails here until it stands in the lists above, and so gets the whole ladder."""
-    assert {_pattern(path) for path in (*PAGES, *FILES, *STREAMS)} == {_pattern(p) for p in _routes("GET")}
+    assert {_pattern(path) for path in (*PAGES, *FILES, *STREAMS, *ASKED)} == {
+        _pattern(p) for p in _routes("GET")
+    }
     assert {_pattern(path) for path in POSTS} == {_pattern(path) for path in _routes("POST")}
 
 
@@ -110,7 +149,7 @@ def test_page_marks_itself_in_the_navigation(visitor: TestClient, path: str) -> 
     wanted = (
         []
         if path == "/" or path in WALLS
-        else [path.partition("/cards/")[0] + "/cards" * ("/cards/" in path)]
+        else [UNDER.get(path, path.partition("/cards/")[0] + "/cards" * ("/cards/" in path))]
     )
     assert here == wanted
 
@@ -148,7 +187,7 @@ def test_page_cannot_be_posted_to_unless_it_takes_a_form(client: TestClient, mee
     assert meet.state() == before
 
 
-@pytest.mark.parametrize("path", [path for path in POSTS if path not in PAGES and path != "/api/plan"])
+@pytest.mark.parametrize("path", [path for path in POSTS if path not in (*PAGES, *ASKED, *MEET_FILES, "/api/plan")])
 def test_action_cannot_be_got(client: TestClient, meet: Meet, path: str) -> None:
     """A link, or a browser that guesses what to load ahead, must not enter anything."""
     before = meet.state()
@@ -159,7 +198,11 @@ def test_action_cannot_be_got(client: TestClient, meet: Meet, path: str) -> None
 
 
 @pytest.mark.parametrize("number", ["99", "0"])
-@pytest.mark.parametrize("path", [path for path in (*PAGES, *FILES, *STREAMS) if path != "/"])
+@pytest.mark.parametrize(
+    "path",
+    [path for path in (*PAGES, *FILES, *STREAMS) if path != "/"]
+    + [path + query for path, query in ASKED.items() if query],
+)
 def test_number_of_nothing_is_told_in_a_sentence(client: TestClient, path: str, number: str) -> None:
     room = path.split("/")[1]
     answer = client.get(path.replace(f"/{room}/1", f"/{room}/{number}", 1))
@@ -259,11 +302,14 @@ def test_form_with_a_field_missing_names_the_field_and_enters_nothing(
     assert (meet.state(), meet.journal()) == (before, journal)
 
 
-@pytest.mark.parametrize("path", [path for path in POSTS if path not in ("/official", "/meets", "/api/plan")])
+@pytest.mark.parametrize("path", [path for path in POSTS if path not in ("/official", "/meets", "/api/plan", *MEET_FILES)])
 def test_action_on_what_is_not_there_is_told_in_a_sentence(client: TestClient, meet: Meet, path: str) -> None:
     before = meet.state()
     data = {"attempt": "1", "version": "0", "weight": "100", "result": "good", "flight": "1", "lift": "1"}
     data |= {"tell": "hold", "shown": "none", "bar": "empty", "name": "Third", "preset": "bar-kg"}
+    data |= {"kind": "bar", "end": "25", "choice": "0", "do": "withdraw", "lifter": "1", "take": "yes", "ready": "dip"}
+    data |= {"extra_plates": "1", "aim": "total", "measure": "mass", "session": "1", "by": "opener", "starts": ""}
+    data |= {"way": "opener", "seen": "x", "to": "1"}
     answer = client.post(path.replace("/1", "/99", 1), data=data)
     assert answer.status_code == 404
     assert " ".join(read(answer.text).texts("strong")).startswith("There is no such ")
