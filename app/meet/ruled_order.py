@@ -6,7 +6,7 @@ from collections.abc import Iterable, Mapping, Sequence
 
 from app.meet.misload import Retake, with_retakes
 from app.meet.model import Attempt, Lifter, Result
-from app.meet.order import Turn
+from app.meet.order import Turn, lifting_order
 from app.meet.rising_bar import rising_order
 from app.meet.rules import OrderSystem, Rules, Ties
 from app.meet.silence import stand_in
@@ -48,7 +48,7 @@ def rounds_order(
     """
     turns = [turn for lifter in lifters for turn in ruled_turns(lifter, attempts.get(lifter.id, ()), rules)]
     if rules.ties is Ties.LOT:
-        return tuple(sorted(turns, key=lambda turn: (turn.attempt.number, turn.weight, turn.lifter.lot)))
+        return lifting_order(turns)
     rank = _ranks(lifters, attempts, lifted)
     order: list[Turn] = []
     for number in sorted({turn.attempt.number for turn in turns}):

@@ -6,9 +6,29 @@ from itertools import pairwise
 from hypothesis import given
 from hypothesis import strategies as st
 
-from app.meet.model import Result
-from app.meet.order import default_weight, flight_order, lifting_order, turns_of, without_opener
+from app.meet.model import Attempt, Lifter, Result
+from app.meet.order import Turn, lifting_order, without_opener
+from app.meet.rule_reading import preset_rules
+from app.meet.ruled_order import ruled_order, ruled_turns
+from app.meet.silence import stand_in
 from tests.meet.nouns import STEP, attempt, lifter, short, turn
+
+ROUNDS_BAR = preset_rules("rounds-bar")
+
+
+def default_weight(before: Attempt | None, weight: Fraction | None, step: Fraction) -> Fraction | None:
+    """What stands in by the rules of a rounds meet with a bar."""
+    return stand_in(ROUNDS_BAR.for_step(step), before, weight)
+
+
+def turns_of(one: Lifter, attempts: list[Attempt], step: Fraction) -> list[Turn]:
+    """What a lifter still has to lift by those rules."""
+    return ruled_turns(one, attempts, ROUNDS_BAR.for_step(step))
+
+
+def flight_order(lifters: list[Lifter], attempts: dict, step: Fraction) -> tuple[Turn, ...]:
+    """The order by those rules."""
+    return ruled_order(lifters, attempts, ROUNDS_BAR.for_step(step))
 
 
 def test_a_round_goes_up_in_weight() -> None:

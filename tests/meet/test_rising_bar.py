@@ -8,10 +8,10 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from app.meet.model import Attempt, Result
-from app.meet.order import Turn, flight_order
+from app.meet.order import Turn, lifting_order
 from app.meet.rising_bar import rising_order, seconds_to_start
 from app.meet.rule_reading import preset_rules
-from app.meet.ruled_order import ruled_order
+from app.meet.ruled_order import ruled_order, ruled_turns
 from app.meet.rules import Default, Ties
 from app.meet.silence import ruled_default, stand_in
 from tests.meet.nouns import attempt, lifter, short, turn
@@ -159,7 +159,8 @@ def test_rounds_with_ties_by_lot_are_the_plain_flight_order(
     theirs = {lot: attempts_of(lot, *one) for lot, one in enumerate(people, 1)}
     lifters = [lifter(lot) for lot in theirs]
     whole = replace(ROUNDS, step=Fraction(1), least_rise=Fraction(1))
-    assert ruled_order(lifters, theirs, whole) == flight_order(lifters, theirs, Fraction(1))
+    turns = [turn for one in lifters for turn in ruled_turns(one, theirs[one.lot], whole)]
+    assert ruled_order(lifters, theirs, whole) == lifting_order(turns)
 
 
 def test_ties_may_keep_the_order_of_the_round_before() -> None:
