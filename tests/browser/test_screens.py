@@ -24,7 +24,9 @@ OVERFLOW = """() => {
   const seen = [...document.querySelectorAll('section.now *')].filter((one) => {
     const box = one.getBoundingClientRect();
     const hidden = box.width <= 1 || box.height <= 1 || getComputedStyle(one).visibility === 'hidden';
-    return !hidden && (box.right > innerWidth + 1 || box.bottom > innerHeight + 1 || box.left < -1 || box.top < -1);
+    // The box of a text in a drawing is its typeface's, taller than its ink; the drawing itself is looked at.
+    if (hidden || one.ownerSVGElement) return false;
+    return box.right > innerWidth + 1 || box.bottom > innerHeight + 1 || box.left < -1 || box.top < -1;
   });
   return {
     down: root.scrollHeight - innerHeight,
