@@ -19,7 +19,9 @@ UNKNOWN_DIAMETER_MM = 300.0
 UNKNOWN_THICKNESS_MM = 20.0
 
 
-def plate_view(face: Fraction, stock: Mapping[Fraction, PlateStock], *, fresh: bool = False) -> PlateView:
+def plate_view(
+    face: Fraction, stock: Mapping[Fraction, PlateStock], *, fresh: bool = False, face_in: bool = False
+) -> PlateView:
     """A plate to be drawn."""
     item = stock.get(face)
     plate = item.plate if item else None
@@ -29,6 +31,7 @@ def plate_view(face: Fraction, stock: Mapping[Fraction, PlateStock], *, fresh: b
         diameter_mm=float(plate.diameter_mm) if plate and plate.diameter_mm else UNKNOWN_DIAMETER_MM,
         thickness_mm=float(plate.thickness_mm) if plate and plate.thickness_mm else UNKNOWN_THICKNESS_MM,
         fresh=fresh,
+        face_in=face_in,
     )
 
 
@@ -45,7 +48,11 @@ def end_view(one: Board, stack: Stack, target: Fraction, fresh: Collection[int])
     """
     check_stack(one.equipment, stack, target, one.wish.order)
     stock = {item.plate.face: item for item in one.now.stock}
-    plates = tuple(plate_view(face, stock, fresh=place in fresh) for place, face in enumerate(stack))
+    faces_in = one.tool.implement.ends == 2 and one.programme.rules.first_face_in
+    plates = tuple(
+        plate_view(face, stock, fresh=place in fresh, face_in=faces_in and place == 0)
+        for place, face in enumerate(stack)
+    )
     collar = show_mass(one.tool.collar.mass) if one.tool.collar else None
     usable = one.tool.implement.usable_mm
     return EndView(
