@@ -93,4 +93,4 @@ def table(page: Page, running: Served, complaints: list[str]) -> Iterator[Page]:
 
 def wait_connected(page: Page) -> None:
     """Until the page has heard of its platform's revision."""
-    page.locator("[data-age]", has_text="connected, last change").wait_for()
+    page.locator("[data-age]", has_text="connected, changed").wait_for()
