@@ -9,7 +9,7 @@ import socket
 import subprocess
 import sys
 import time
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from contextlib import contextmanager, redirect_stderr, redirect_stdout
 from dataclasses import dataclass
 from pathlib import Path
@@ -78,12 +78,15 @@ class Served:
 
 
 @contextmanager
-def served(command: str, data: Path, port: int | None = None) -> Iterator[Served]:
+def served(
+    command: str, data: Path, port: int | None = None, options: Sequence[str] = ()
+) -> Iterator[Served]:
     """``platewright demo`` or ``serve`` over a folder, for as long as the block lasts."""
     port = port or free_port()
     data.parent.mkdir(parents=True, exist_ok=True)
     log = data.parent / f"{data.name}-{port}.log"
     arguments = [sys.executable, "-m", "app.cli", command, "--port", str(port), "--data", str(data)]
+    arguments += options
     with (
         log.open("wb") as out,
         subprocess.Popen(

@@ -11,13 +11,14 @@ from datetime import datetime
 from sqlalchemy import Engine
 from sqlmodel import Session, col, select
 
+from app.desk.errors import NotKept
 from app.desk.hands_off import check_hands_off
 from app.desk.hub import Hub, platform_topic
 from app.desk.improve import Improver
 from app.desk.owned import check_owned
 from app.desk.settle import settle
 from app.planning import Budget
-from app.store.engine import writing
+from app.store.engine import CannotWrite, writing
 from app.store.journal import Edit, Recorder
 from app.store.picture import Picture, get, key, picture
 from app.store.tables import JournalRow, PlateRow, PlatformRow
@@ -72,9 +73,19 @@ class Work:
 
 
 @contextmanager
+def kept(engine: Engine) -> Iterator[Session]:
+    """A write transaction that is on the disk when the block ends, or else was refused in a plain sentence."""
+    try:
+        with writing(engine) as session:
+            yield session
+    except CannotWrite as error:
+        raise NotKept(error.trouble) from error
+
+
+@contextmanager
 def platform_entry(desk: Desk, platform_id: int, who: str) -> Iterator[Work]:
     """An entry about one platform."""
-    with writing(desk.engine) as session:
+    with kept(desk.engine) as session:
         meet_id = get(session, PlatformRow, platform_id, "platform").meet_id
         work = Work(session, meet_id, platform_id, desk.clock(), who, touched={platform_id})
         recorder = Recorder(session)
@@ -89,7 +100,7 @@ def meet_entry(desk: Desk, meet_id: int, who: str) -> Iterator[Work]:
 
     The entry that starts a meet begins with a number that is none, 0, and gives the work the meet's own.
     """
-    with writing(desk.engine) as session:
+    with kept(desk.engine) as session:
         work = Work(session, meet_id, None, desk.clock(), who)
         recorder = Recorder(session)
         yield work

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from app.store.trouble import BUSY, DAMAGED, FULL, READ_ONLY
+
 
 class DeskError(Exception):
     """Something that was not done, and why; nothing was changed."""
@@ -25,6 +27,26 @@ class SomebodyWasFirst(DeskError):
     """Two people entered the same thing; the second is told what the first wrote."""
 
     status_code = 409
+
+
+class NotKept(DeskError):
+    """The disk did not take the entry; what was acknowledged before is not touched by that."""
+
+    status_code = 503
+
+    def __init__(self, trouble: str) -> None:
+        super().__init__(
+            f"Not entered: the disk on which the meet is kept {trouble}. What was entered before is safe. "
+            f"{REMEDIES.get(trouble, 'Look after the disk')}, then enter it again."
+        )
+
+
+REMEDIES = {
+    FULL: "Make room on it (empty the wastebasket, move films and pictures away)",
+    READ_ONLY: "Make it writable again, or restore the newest copy on another disk",
+    BUSY: "Close the other program",
+    DAMAGED: "Stop the server and run “platewright check”",
+}
 
 
 class WrongRoster(DeskError):

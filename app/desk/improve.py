@@ -7,20 +7,24 @@ transaction. A newer entry makes an older plan worthless: it is stopped, and wha
 
 from __future__ import annotations
 
+import logging
 import math
 from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import replace
 from threading import Lock
+from typing import Any
 
 from sqlalchemy import Engine
 
 from app.desk.hub import Hub, platform_topic
 from app.desk.planned import plan_belts, situation, stored_plan
 from app.planning import Budget
-from app.store.engine import reading, writing
+from app.store.engine import CannotWrite, reading, writing
 from app.store.picture import get, picture
 from app.store.tables import PlatformRow
+
+log = logging.getLogger("platewright.plan")
 
 
 class Improver:
@@ -53,15 +57,24 @@ class Improver:
         made = plan_belts(now, here.lift_id, here.starts, turns, budget)
         if made is None or not self._current(platform_id, revision):
             return False
-        with writing(self._engine) as session:
-            row = get(session, PlatformRow, platform_id, "platform")
-            stored = stored_plan(made, turns)
-            if row.revision != revision or stored is None or row.plan == stored:
-                return False
-            row.plan = stored
-            row.revision += 1
-            session.add(row)
+        if not self._stored(platform_id, revision, stored_plan(made, turns)):
+            return False
         self._hub.publish(platform_topic(platform_id))
+        return True
+
+    def _stored(self, platform_id: int, revision: int, plan: dict[str, Any] | None) -> bool:
+        """Whether the plan was new and is on the disk; where that is full the crew goes on with the one it has."""
+        try:
+            with writing(self._engine) as session:
+                row = get(session, PlatformRow, platform_id, "platform")
+                if row.revision != revision or plan is None or row.plan == plan:
+                    return False
+                row.plan = plan
+                row.revision += 1
+                session.add(row)
+        except CannotWrite as error:
+            log.warning("A better plan was found and not kept: %s", error)
+            return False
         return True
 
     def close(self) -> None:

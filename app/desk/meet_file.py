@@ -10,14 +10,14 @@ from typing import Any
 
 from sqlmodel import Session, col, select
 
-from app.desk.entry import Desk
+from app.desk.entry import Desk, kept
 from app.desk.errors import NotAllowedNow
 from app.desk.meet_check import check_meet
 from app.desk.roster import pictures
 from app.desk.settle import settle
 from app.loading.mass import show_mass
 from app.meet.model import RESULT_WORDS, Result
-from app.store.engine import reading, writing
+from app.store.engine import reading
 from app.store.meet_file import WrongMeetFile, load_meet, meet_text
 from app.store.picture import Picture, get, key
 from app.store.tables import JournalRow, MeetRow, PlatformRow
@@ -46,7 +46,7 @@ def export_meet(desk: Desk, meet_id: int) -> str:
 
 def import_meet(desk: Desk, text: str) -> int:
     """A meet file becomes another meet of this folder, beside those that are there; its id."""
-    with writing(desk.engine) as session:
+    with kept(desk.engine) as session:
         try:
             meet_id = load_meet(session, text)
             check_meet(session, meet_id)

@@ -11,13 +11,24 @@ from contextlib import contextmanager
 from typing import Any
 
 from sqlalchemy import Connection, Engine, create_engine, event
+from sqlalchemy.exc import DBAPIError
 from sqlmodel import Session
+
+from app.store.trouble import trouble_of
 
 PRAGMAS = ("journal_mode=WAL", "synchronous=FULL", "busy_timeout=5000", "foreign_keys=ON")
 
 # SQLite before 3.51.3 can, very rarely, damage a file when two connections checkpoint at the same instant;
 # all our writers pass through this one lock, so two never do.
 _write_lock = threading.Lock()
+
+
+class CannotWrite(Exception):
+    """The disk did not take a transaction: nothing of it was kept. ``trouble``: why, as the end of a sentence."""
+
+    def __init__(self, trouble: str) -> None:
+        super().__init__(f"The disk {trouble}.")
+        self.trouble = trouble
 
 
 def make_engine(url: str) -> Engine:
@@ -43,9 +54,18 @@ def make_engine(url: str) -> Engine:
 
 @contextmanager
 def writing(engine: Engine) -> Iterator[Session]:
-    """One write transaction; commits at the end, rolls back on an exception."""
-    with _write_lock, Session(engine.execution_options(writes=True)) as session, session.begin():
-        yield session
+    """One write transaction; commits at the end, rolls back on an exception.
+
+    Raises :class:`CannotWrite` where the disk is full, read-only or does not answer.
+    """
+    try:
+        with _write_lock, Session(engine.execution_options(writes=True)) as session, session.begin():
+            yield session
+    except DBAPIError as error:
+        trouble = trouble_of(error)
+        if trouble is None:
+            raise
+        raise CannotWrite(trouble) from error
 
 
 @contextmanager

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from datetime import datetime
 from typing import Annotated
 from urllib.parse import quote
 
@@ -15,6 +16,7 @@ from starlette.responses import Response
 from app.desk import copying, setup, stock
 from app.desk.entry import Desk
 from app.desk.errors import DeskError
+from app.desk.keeper import Standing
 from app.desk.owned import owned_pieces, placed
 from app.desk.roster import pictures
 from app.desk.stock import owned_seen
@@ -38,6 +40,43 @@ class OwnedView:
     counted: bool
     seen: str
     rows: Rows
+
+
+@dataclass(frozen=True, slots=True)
+class CopiesView:
+    """How the copies stand, in two sentences; ``bad``: none is being made."""
+
+    sentence: str
+    hint: str
+    bad: bool
+
+
+def copies_view(standing: Standing, now: datetime) -> CopiesView:
+    """What the Meet page says of the copies. Times are those of the machine's clock; of another day, with the date."""
+    plan, last = standing.plan, standing.last
+    when = ""
+    if last is not None:
+        local = last.at.astimezone()
+        when = local.strftime("%H:%M" if local.date() == now.astimezone().date() else "%Y-%m-%d %H:%M")
+    if standing.trouble:
+        since = f"No copy since {when}" if when else "No copy yet"
+        return CopiesView(
+            f"{since}: the folder {plan.folder} {standing.trouble}.",
+            "The meet goes on and every entry is on this machine's disk. It is tried again by itself; put the folder "
+            "right, or start again with another one: --backup FOLDER.",
+            bad=True,
+        )
+    sentence = (
+        f"Last copy {when}, {standing.kept} kept in {plan.folder}."
+        if when
+        else f"No copy yet; it will go to {plan.folder}."
+    )
+    return CopiesView(
+        sentence,
+        f"One after each round and every {plan.minutes:g} minutes while something changes; the last {plan.keep} are "
+        "kept. On a stick (--backup FOLDER) they outlive this machine.",
+        bad=False,
+    )
 
 
 @router.get("/")
@@ -133,6 +172,7 @@ def _render_meet(
         name, unit = meet.name, meet.unit
         platforms = pictures(session, meet_id)
         owned = _owned(session, meet, owned_typed)
+    keeper = getattr(request.app.state, "keeper", None)
     return page(
         "home/meet.html",
         status if refused or owned_refused else 200,
@@ -147,6 +187,7 @@ def _render_meet(
         typed=f"Platform {len(platforms) + 1}" if typed is None else typed,
         preset=preset,
         owned=owned,
+        copies=None if keeper is None else copies_view(keeper.standing, desk.clock()),
         owned_refused=owned_refused,
     )
 

@@ -12,6 +12,7 @@ from urllib.parse import urlsplit
 
 from fastapi import FastAPI
 from fastapi.exceptions import RequestValidationError
+from sqlalchemy.exc import DBAPIError
 from starlette.exceptions import HTTPException
 from starlette.requests import Request
 from starlette.responses import JSONResponse, Response
@@ -21,11 +22,13 @@ from app.desk.entry import Clock, Desk
 from app.desk.errors import DeskError
 from app.desk.hub import MemoryHub
 from app.desk.improve import Improver
+from app.desk.keeper import CopyPlan, Keeper
 from app.desk.plan_text import watched
 from app.planning import Budget
 from app.store.engine import make_engine
 from app.store.migrate import upgrade
 from app.store.picture import NotFound
+from app.store.trouble import trouble_of
 from app.web import (
     cards,
     crew,
@@ -37,6 +40,7 @@ from app.web import (
     lift_page,
     live,
     misload_page,
+    paper_back,
     plan_api,
     plates_check_page,
     roster,
@@ -66,8 +70,13 @@ def utc_now() -> datetime:
     return datetime.now(UTC)
 
 
-def create_app(database_url: str, clock: Clock = utc_now, plan_budget: Budget | None = None) -> FastAPI:
-    """The app over one database, brought up to date at start."""
+def create_app(
+    database_url: str,
+    clock: Clock = utc_now,
+    plan_budget: Budget | None = None,
+    copy_plan: CopyPlan | None = None,
+) -> FastAPI:
+    """The app over one database, brought up to date at start; with a plan for copies, these are made too."""
 
     @asynccontextmanager
     async def lifespan(app: FastAPI) -> AsyncIterator[None]:
@@ -77,8 +86,14 @@ def create_app(database_url: str, clock: Clock = utc_now, plan_budget: Budget | 
         improver = Improver(engine, hub, Budget(seconds=IMPROVE_SECONDS, monotonic=time.monotonic))
         app.state.hub = hub
         app.state.desk = Desk(engine, hub, clock, improver=improver)
+        keeper = None if copy_plan is None else Keeper(engine, copy_plan, clock, time.monotonic)
+        app.state.keeper = keeper
+        if keeper is not None:
+            keeper.start()
         yield
         improver.close()
+        if keeper is not None:
+            keeper.close()  # nothing is served any more, so nobody waits for the last copy
         engine.dispose()
 
     app = FastAPI(title="Platewright", lifespan=lifespan, docs_url=None, redoc_url=None)
@@ -95,6 +110,7 @@ def create_app(database_url: str, clock: Clock = utc_now, plan_budget: Budget | 
         rules_page,
         table,
         misload_page,
+        paper_back,
         crew,
         screens,
         cards,
@@ -104,6 +120,7 @@ def create_app(database_url: str, clock: Clock = utc_now, plan_budget: Budget | 
         app.include_router(router.router)
     app.middleware("http")(_guard)
     app.add_exception_handler(DeskError, _desk_error)
+    app.add_exception_handler(DBAPIError, _unreadable)
     app.add_exception_handler(NotFound, _not_found)
     app.add_exception_handler(OverflowError, _no_such_number)
     app.add_exception_handler(HTTPException, _http_error)
@@ -146,6 +163,18 @@ def _answer(request: Request, status: int, text: str, help_: str = "") -> Respon
 
 async def _desk_error(request: Request, error: Exception) -> Response:
     return _answer(request, error.status_code if isinstance(error, DeskError) else 500, str(error))
+
+
+async def _unreadable(request: Request, error: Exception) -> Response:
+    """A page whose meet cannot be read; entries that cannot be written are a :class:`NotKept` of the desk."""
+    trouble = trouble_of(error)
+    if trouble is None:
+        return await _broken(request, error)
+    log.error("%s %s failed: the disk %s", request.method, request.url.path, trouble)
+    sentence = f"The meet cannot be read: the file or its disk {trouble}. Nothing was entered."
+    return _answer(
+        request, 503, sentence, "Stop the server, run “platewright check”, and restore the newest copy."
+    )
 
 
 async def _not_found(request: Request, error: Exception) -> Response:

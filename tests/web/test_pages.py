@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import sqlite3
+from contextlib import closing
+
 import pytest
 from fastapi.routing import APIRoute
 from starlette.testclient import TestClient
@@ -27,13 +30,18 @@ PAGES = {
     "/platforms/1/chart/1": "Loading chart, Squat",
     "/platforms/1/checklist": "Set-up, Main hall",
     "/platforms/1/equipment": "Equipment, Main hall",
+    "/platforms/1/from-paper": "Back from paper, Flight A · Squat · round 2",
     "/platforms/1/rules": "Rules, Saturday, bar lifts",
     "/platforms/1/flights": "Flights, Saturday, bar lifts",
     "/platforms/1/lifts/1": "Squat, Main hall",
     "/platforms/1/plates-check": "Will the plates do? Main hall",
 }
 # Pages that stand under another one in the navigation.
-UNDER = {"/platforms/1/lifts/1": "/platforms/1/equipment", "/platforms/1/plates-check": "/platforms/1/equipment"}
+UNDER = {
+    "/platforms/1/from-paper": "/platforms/1/cards",
+    "/platforms/1/lifts/1": "/platforms/1/equipment",
+    "/platforms/1/plates-check": "/platforms/1/equipment",
+}
 # Walls without navigation, and pages that are reached from others.
 WALLS = tuple(
     f"/platforms/1/{name}"
@@ -83,6 +91,7 @@ POSTS = (
     "/platforms/1/lifts/1/ready",
     "/platforms/1/rules",
     "/platforms/1/misload",
+    "/platforms/1/from-paper",
     "/platforms/1/lifter",
     "/platforms/1/owner",
     "/platforms/1/redo",
@@ -187,7 +196,9 @@ def test_page_cannot_be_posted_to_unless_it_takes_a_form(client: TestClient, mee
     assert meet.state() == before
 
 
-@pytest.mark.parametrize("path", [path for path in POSTS if path not in (*PAGES, *ASKED, *MEET_FILES, "/api/plan")])
+@pytest.mark.parametrize(
+    "path", [path for path in POSTS if path not in (*PAGES, *ASKED, *MEET_FILES, "/api/plan")]
+)
 def test_action_cannot_be_got(client: TestClient, meet: Meet, path: str) -> None:
     """A link, or a browser that guesses what to load ahead, must not enter anything."""
     before = meet.state()
@@ -302,14 +313,31 @@ def test_form_with_a_field_missing_names_the_field_and_enters_nothing(
     assert (meet.state(), meet.journal()) == (before, journal)
 
 
-@pytest.mark.parametrize("path", [path for path in POSTS if path not in ("/official", "/meets", "/api/plan", *MEET_FILES)])
+@pytest.mark.parametrize(
+    "path", [path for path in POSTS if path not in ("/official", "/meets", "/api/plan", *MEET_FILES)]
+)
 def test_action_on_what_is_not_there_is_told_in_a_sentence(client: TestClient, meet: Meet, path: str) -> None:
     before = meet.state()
     data = {"attempt": "1", "version": "0", "weight": "100", "result": "good", "flight": "1", "lift": "1"}
     data |= {"tell": "hold", "shown": "none", "bar": "empty", "name": "Third", "preset": "bar-kg"}
-    data |= {"kind": "bar", "end": "25", "choice": "0", "do": "withdraw", "lifter": "1", "take": "yes", "ready": "dip"}
-    data |= {"extra_plates": "1", "aim": "total", "measure": "mass", "session": "1", "by": "opener", "starts": ""}
-    data |= {"way": "opener", "seen": "x", "to": "1"}
+    data |= {
+        "kind": "bar",
+        "end": "25",
+        "choice": "0",
+        "do": "withdraw",
+        "lifter": "1",
+        "take": "yes",
+        "ready": "dip",
+    }
+    data |= {
+        "extra_plates": "1",
+        "aim": "total",
+        "measure": "mass",
+        "session": "1",
+        "by": "opener",
+        "starts": "",
+    }
+    data |= {"number": "1", "way": "opener", "seen": "x", "to": "1"}
     answer = client.post(path.replace("/1", "/99", 1), data=data)
     assert answer.status_code == 404
     assert " ".join(read(answer.text).texts("strong")).startswith("There is no such ")
@@ -328,13 +356,11 @@ def test_attempt_of_nothing_is_told_in_a_sentence(client: TestClient, meet: Meet
 
 
 def test_fault_inside_is_told_in_a_sentence_with_the_headers_and_nothing_of_the_fault(meet: Meet) -> None:
-    """The database file is damaged under the running program: a real fault, not a pretended one."""
+    """A table is taken away under the running program: a real fault, not a pretended one."""
     with app_over(meet, faults=True) as client:
         client.get("/")
-        for name in ("meet.db-wal", "meet.db-shm"):
-            (meet.file.parent / name).unlink(missing_ok=True)
-        meet.file.write_bytes(b"no longer a database" * 500)
-        client.app.state.desk.engine.dispose()
+        with closing(sqlite3.connect(meet.file)) as connection:
+            connection.execute("ALTER TABLE platform RENAME TO elsewhere")
         for path, shape in (("/meets/1", "html"), ("/platforms/1/crew", "html")):
             answer = client.get(path)
             assert answer.status_code == 500
