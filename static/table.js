@@ -101,6 +101,32 @@
     }
   });
 
+  // What is half typed stays, with what was said about it: an update of the page knows of neither.
+  const ahead = (id) => document.getElementById(id.replace("weight-", "ahead-"));
+  const ofTable = (event) => event.detail.ctx?.target?.id === "table";
+  let kept = [];
+  document.addEventListener("htmx:before:swap", (event) => {
+    if (!ofTable(event)) return;
+    const boxes = [...document.querySelectorAll(".weight-box")].filter((box) => seen.has(box.form.elements.attempt.value));
+    kept = boxes.map((box) => ({
+      id: box.id, value: box.value, wrong: box.hasAttribute("aria-invalid"), said: [...ahead(box.id).childNodes],
+      reason: box.form.querySelector(".reason"), cursor: document.activeElement,
+    }));
+  });
+  document.addEventListener("htmx:after:swap", (event) => {
+    if (!ofTable(event)) return;
+    for (const { id, value, wrong, said, reason, cursor } of kept) {
+      const box = document.getElementById(id);
+      if (!box || box.hasAttribute("aria-invalid") || !seen.has(box.form.elements.attempt.value)) continue;
+      box.value = value;
+      if (wrong) box.setAttribute("aria-invalid", "true");
+      if (ahead(id).children.length === 0) ahead(id).replaceChildren(...said);
+      if (!reason || reason.isConnected) continue;
+      ahead(id).before(reason);
+      if (cursor === reason) reason.focus();
+    }
+  });
+
   // The page also fetches itself when the server announces what this very screen has just entered; that answer
   // says nothing and points nowhere, and must not take away what the entry's own answer said.
   const SAID_STAYS_MS = 5000;

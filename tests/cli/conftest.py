@@ -7,13 +7,13 @@ from pathlib import Path
 
 import pytest
 
-from tests.web.ready import Meet, make_ready
+from tests.web.ready import Meet, ready_once
 
 
 @pytest.fixture(scope="session")
 def demo_file(tmp_path_factory: pytest.TempPathFactory) -> Path:
     """The demo meet, made once; tests work on copies."""
-    return make_ready(tmp_path_factory.mktemp("demo"))
+    return ready_once(tmp_path_factory)
 
 
 @pytest.fixture

@@ -10,13 +10,13 @@ import pytest
 from starlette.testclient import TestClient
 
 from tests.web.asking import HTMX, app_over
-from tests.web.ready import Meet, make_ready
+from tests.web.ready import Meet, ready_once
 
 
 @pytest.fixture(scope="session")
 def demo_file(tmp_path_factory: pytest.TempPathFactory) -> Path:
     """The demo meet, made once; tests work on copies."""
-    return make_ready(tmp_path_factory.mktemp("ready"))
+    return ready_once(tmp_path_factory)
 
 
 @pytest.fixture
@@ -50,4 +50,24 @@ def visitor(meet: Meet) -> Iterator[TestClient]:
 def new_client(request: pytest.FixtureRequest, fresh: Meet) -> Iterator[TestClient]:
     """An empty folder's pages, both ways."""
     with app_over(fresh, request.param) as client:
+        yield client
+
+
+@pytest.fixture(scope="session")
+def still_meet(demo_file: Path, tmp_path_factory: pytest.TempPathFactory) -> Meet:
+    """The ready meet for tests that only look, or whose entries are all refused: one copy for all of them."""
+    return Meet(Path(shutil.copy(demo_file, tmp_path_factory.mktemp("still") / "meet.db")))
+
+
+@pytest.fixture(scope="session", params=[{}, HTMX], ids=["plain", "htmx"])
+def still_client(request: pytest.FixtureRequest, still_meet: Meet) -> Iterator[TestClient]:
+    """Its pages, both ways."""
+    with app_over(still_meet, request.param) as client:
+        yield client
+
+
+@pytest.fixture(scope="session")
+def still_visitor(still_meet: Meet) -> Iterator[TestClient]:
+    """Its pages, without scripts."""
+    with app_over(still_meet) as client:
         yield client

@@ -121,7 +121,9 @@ def form(page: Element, action: str, **holds: str) -> Form:
     found = [
         one for one, element in forms(page) if one.action.endswith(action) and _holds(element, one, holds)
     ]
-    assert len(found) == 1, f"{len(found)} forms to {action} with {holds}"
+    # The same word may stand in two places of a page; then either form says the same.
+    assert found, f"no form to {action} with {holds}"
+    assert all(one == found[0] for one in found), f"{len(found)} different forms to {action} with {holds}"
     return found[0]
 
 

@@ -10,6 +10,8 @@ from fractions import Fraction
 from pathlib import Path
 from typing import Any
 
+import pytest
+
 from app.desk.demo import make_demo
 from app.desk.entry import Desk
 from app.desk.hub import QuietHub
@@ -33,6 +35,16 @@ def make_ready(folder: Path) -> Path:
     return file
 
 
+_made: list[Path] = []
+
+
+def ready_once(factory: pytest.TempPathFactory) -> Path:
+    """The same file for all folders of tests that need it: making it takes seconds. Copy it, never write to it."""
+    if not _made:
+        _made.append(make_ready(factory.mktemp("demo")))
+    return _made[0]
+
+
 @dataclass(frozen=True)
 class Meet:
     """The database file of a test, looked at with plain SQL."""
@@ -53,8 +65,7 @@ class Meet:
     def state(self) -> dict[str, dict[int, Row]]:
         """Everything the meet is, table by table, by id."""
         return {
-            table: {row["id"]: _kept(row) for row in self.rows(f"SELECT * FROM {table}")}
-            for table in TABLES
+            table: {row["id"]: _kept(row) for row in self.rows(f"SELECT * FROM {table}")} for table in TABLES
         }
 
     def journal(self) -> list[Row]:
@@ -84,6 +95,15 @@ class Meet:
         """How many pieces of each plate stand at a platform."""
         rows = self.rows("SELECT face, count FROM plate WHERE platform_id = ?", platform_id)
         return {Fraction(row["face"]): row["count"] for row in rows}
+
+    def diameters(self, platform_id: int) -> dict[Fraction, Fraction]:
+        """How wide each plate is, in mm."""
+        rows = self.rows("SELECT face, diameter_mm FROM plate WHERE platform_id = ?", platform_id)
+        return {Fraction(row["face"]): Fraction(row["diameter_mm"] or 0) for row in rows}
+
+    def loading(self, lift_id: int) -> Row:
+        """A lift's settings as they are stored."""
+        return json.loads(self.row("SELECT loading FROM lift WHERE id = ?", lift_id)["loading"] or "{}")
 
 
 def _kept(row: Row) -> Row:

@@ -9,6 +9,7 @@ import pytest
 from starlette.testclient import TestClient
 
 from tests.web.asking import get
+from tests.web.hands import can_be_done, stands_well, wish
 from tests.web.pages import Element, form
 from tests.web.ready import Meet
 from tests.web.test_table_page import judge
@@ -74,19 +75,20 @@ def test_list_offers_every_round_and_marks_the_lift_that_is_on(visitor: TestClie
 
 @pytest.mark.parametrize(("platform", "flight", "lift", "number"), CARDS, ids=str)
 def test_every_line_of_every_card_adds_up(
-    visitor: TestClient, meet: Meet, platform: int, flight: int, lift: int, number: int
+    still_visitor: TestClient, still_meet: Meet, platform: int, flight: int, lift: int, number: int
 ) -> None:
     """The stack of each line makes its weight from the plates there are, and follows from the line before."""
-    sheet = card(visitor, platform, flight, lift, number)
-    stock, bar = meet.stock(platform), None
-    open_ones = meet.rows(
+    sheet = card(still_visitor, platform, flight, lift, number)
+    stock, bar = still_meet.stock(platform), None
+    widths, (order, access) = still_meet.diameters(platform), wish(still_meet.loading(lift))
+    open_ones = still_meet.rows(
         "SELECT attempt.id FROM attempt JOIN lifter ON lifter.id = lifter_id"
         " WHERE flight_id = ? AND lift_id = ? AND number = ? AND result = 'open'",
         flight,
         lift,
         number,
     )
-    declared = meet.rows(
+    declared = still_meet.rows(
         "SELECT attempt.id FROM attempt JOIN lifter ON lifter.id = lifter_id"
         " WHERE flight_id = ? AND lift_id = ? AND number = ? AND weight IS NOT NULL",
         flight,
@@ -95,17 +97,14 @@ def test_every_line_of_every_card_adds_up(
     )
     # A round that nobody has declared is a blank card: see tests/web/test_paper.py.
     assert len(to_load(sheet)) == (len(open_ones) if declared else 0)
-    members = meet.rows("SELECT name FROM lifter WHERE flight_id = ?", flight)
+    members = still_meet.rows("SELECT name FROM lifter WHERE flight_id = ?", flight)
     for row in to_load(sheet):
         stack = faces(cell(row, "c-stack"))
         assert EMPTY[platform] + ENDS[platform] * sum(stack) == called(row)
         assert all(ENDS[platform] * n <= stock.get(face, 0) for face, n in Counter(stack).items())
-        if platform == 1:  # a belt's stack may stand in any order
-            assert list(stack) == sorted(stack, reverse=True)
+        assert stands_well(stack, order, widths)
         off, on = faces(cell(row, "c-off")), faces(cell(row, "c-on"))
-        if bar is not None:
-            assert bar[len(bar) - len(off) :] == tuple(reversed(off))
-            assert bar[: len(bar) - len(off)] + on == stack
+        assert bar is None or can_be_done(bar, stack, off, on, access)
         bar = stack
     assert [called(row) for row in to_load(sheet)] == sorted(called(row) for row in to_load(sheet))
     named = [cell(row, "c-who") for row in sheet.one("tbody").all("tr")]

@@ -35,12 +35,11 @@ def test_changing_shows_weight_off_on_and_the_finished_end(client: TestClient, m
 def test_same_weight_for_the_next_lifter_fills_the_screen_with_no_change(
     client: TestClient, meet: Meet
 ) -> None:
-    declare(client, meet.attempt(7, "Squat", 2), "117.5")
-    declare(client, up(meet), "117.5")
+    declare(client, up(meet), "125")
     tell(client, "before")
     judge(client, "good")
     screen = look(client)
-    assert (screen.state, screen.no_change, screen.weight) == ("changing", True, Fraction("117.5"))
+    assert (screen.state, screen.no_change, screen.weight) == ("changing", True, Fraction(125))
     assert (screen.off, screen.on, screen.drawn) == (None, None, None)
     assert screen.added_up == kg(*meet.platform()["bar"])
 

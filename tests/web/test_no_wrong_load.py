@@ -17,6 +17,7 @@ from starlette.testclient import TestClient
 
 from tests.web.asking import HTMX, app_over, get, landed, send
 from tests.web.crew_screen import Faces, Screen, look
+from tests.web.hands import can_be_done, stands_well, wish
 from tests.web.pages import Element, read
 from tests.web.ready import Meet
 
@@ -35,15 +36,26 @@ BAR = Iron(1, Fraction(25), 2, Fraction("2.5"))
 BELT = Iron(2, Fraction(0), 1, Fraction("1.25"))
 
 
-def check(screen: Screen, iron: Iron, stock: dict[Fraction, int], before: Faces | None) -> Faces:
+@dataclass(frozen=True)
+class Platform:
+    """What the check may use: the implement, the pieces and sizes of the plates, and the lift's order and access."""
+
+    iron: Iron
+    stock: dict[Fraction, int]
+    widths: dict[Fraction, Fraction]
+    order: str
+    access: str
+
+
+def check(screen: Screen, on_platform: Platform, before: Faces | None) -> Faces:
     """Add one screen up; returns what is then on each end."""
+    iron = on_platform.iron
     assert screen.weight is not None
     shown = screen.drawn if screen.drawn is not None else screen.added_up
     assert shown is not None, screen.text
     assert iron.empty + iron.ends * sum(shown) == screen.weight
-    assert all(iron.ends * n <= stock.get(face, 0) for face, n in Counter(shown).items())
-    if iron.ends == 2:
-        assert list(shown) == sorted(shown, reverse=True), "heaviest inside; a belt may stand in any order"
+    assert all(iron.ends * n <= on_platform.stock.get(face, 0) for face, n in Counter(shown).items())
+    assert stands_well(shown, on_platform.order, on_platform.widths), shown
     if screen.state == "lifting" and screen.added_up is None:
         return shown  # a round ends: the great fall to come stands where the sums stood
     assert screen.added_up == shown
@@ -52,20 +64,17 @@ def check(screen: Screen, iron: Iron, stock: dict[Fraction, int], before: Faces 
     if iron.ends == 2:
         assert screen.whole == (2, sum(shown), iron.empty, screen.weight)
     if screen.state in ("changing", "unknown"):
-        _check_hands(screen, shown, before)
+        _check_hands(screen, shown, before, on_platform.access)
     return shown
 
 
-def _check_hands(screen: Screen, shown: Faces, before: Faces | None) -> None:
+def _check_hands(screen: Screen, shown: Faces, before: Faces | None, access: str) -> None:
     off, on = screen.off or (), screen.on or ()
     if screen.everything_off:
         assert on == shown
-    elif screen.no_change:
-        assert before is None or shown == before
     else:
-        assert off or on
-        assert before is None or before[: len(before) - len(off)] + on == shown
-        assert before is None or tuple(reversed(before[len(before) - len(off) :])) == off
+        assert screen.no_change is not bool(off or on)
+        assert before is None or can_be_done(before, shown, off, on, access), (before, off, on, shown)
 
 
 class Day:
@@ -78,6 +87,11 @@ class Day:
         self.seen: Counter[str] = Counter()
         self.lifted = 0
 
+    def on_platform(self) -> Platform:
+        number = self.iron.platform_id
+        order, access = wish(self.meet.loading(self.meet.platform(number)["lift_id"]))
+        return Platform(self.iron, self.meet.stock(number), self.meet.diameters(number), order, access)
+
     def table(self) -> Element:
         return get(self.client, f"{self.base}/table")
 
@@ -88,7 +102,7 @@ class Day:
         screen = look(self.client, self.iron.platform_id)
         self.seen["no change" if screen.no_change else screen.state] += 1
         if screen.state in ("changing", "unknown", "lifting"):
-            stack = check(screen, self.iron, self.meet.stock(self.iron.platform_id), self.bar)
+            stack = check(screen, self.on_platform(), self.bar)
             assert screen.weight == self._called()
             if screen.state == "lifting":
                 self.bar = stack
