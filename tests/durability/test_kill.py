@@ -135,8 +135,8 @@ def test_every_acknowledged_entry_survives_kill_9_at_any_moment(meet: Meet) -> N
             kill_while_they_enter(meet, running, tables, chance)
     for table in tables:
         assert table.wrong == []
-        assert len(table.acknowledged) >= KILLS // 2
         assert len(unsure[table.name]) <= KILLS
+    assert sum(len(table.acknowledged) for table in tables) >= KILLS  # every life waits for a first answer
     made = copies(meet.file.parent / "backups")
     for copy in made[:: max(1, len(made) // 10)]:
         assert check_file(copy.file).wrong == []

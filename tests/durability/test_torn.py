@@ -58,8 +58,8 @@ def test_a_log_that_was_cut_off_anywhere_gives_every_entry_that_was_whole_by_the
     kept, lengths, before = cut_short
     log = (kept / "meet.db-wal").read_bytes()
     chance = random.Random(1)
-    edges = [edge for length in lengths for edge in (length - 1, length, length + 1)]
-    for place in [0, 31, 32, *edges, *(chance.randrange(len(log)) for _ in range(20))]:
+    edges = [edge for length in lengths for edge in (length - 1, length)]
+    for place in [0, 31, 32, *edges, *(chance.randrange(len(log)) for _ in range(8))]:
         assert after(kept, tmp_path, log[:place]) == before + whole(lengths, place), place
 
 
@@ -69,7 +69,7 @@ def test_a_log_in_which_a_byte_was_garbled_gives_every_entry_before_it(cut_short
     log = (kept / "meet.db-wal").read_bytes()
     chance = random.Random(2)
     start = lengths[0]
-    for place in (chance.randrange(start, len(log)) for _ in range(25)):
+    for place in (chance.randrange(start, len(log)) for _ in range(12)):
         torn = bytearray(log)
         torn[place] ^= 1 << chance.randrange(8)
         newest = after(kept, tmp_path, bytes(torn))
