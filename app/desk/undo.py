@@ -13,8 +13,12 @@ from sqlmodel import Session
 
 from app.desk.entry import Desk, Work, platform_entry
 from app.desk.errors import NotAllowedNow, SomebodyWasFirst
+from app.desk.hands_off import hands_off
 from app.desk.people import check_owner
+from app.meet.model import Result
+from app.meet.platform import Condition
 from app.store.journal import CannotUndo, Edit, last_redoable, last_undoable, put_back
+from app.store.picture import get
 from app.store.tables import AttemptRow, JournalRow, LifterRow
 
 Find = Callable[[Session, int, int | None], JournalRow | None]
@@ -40,6 +44,8 @@ def _reverse(desk: Desk, platform_id: int, entry_id: int | None, find: Find, wor
                 f"Somebody made another entry since: “{entry.what}”. Look before you {word}."
             )
         _check_owners(work, entry.edits)
+        if word == "undo":
+            _leave_loaded_bar(work, entry.edits)
         try:
             put_back(work.session, entry.edits, entry.what)
         except CannotUndo as refused:
@@ -48,6 +54,18 @@ def _reverse(desk: Desk, platform_id: int, entry_id: int | None, find: Find, wor
         plain = entry.what.removeprefix(UNDONE)
         work.what = f"{UNDONE if word == 'undo' else REDONE}{plain}"
         return f"{work.what[0].upper()}{work.what[1:]}."
+
+
+def _leave_loaded_bar(work: Work, edits: Iterable[Edit]) -> None:
+    """A retake that was granted is not taken back while its lifter stands under the bar: that would be a result."""
+    hand = work.platform.hand
+    if hand is None or work.platform.condition != Condition.LIFTING:
+        return
+    granted = [edit["id"] for edit in edits if (edit["after"] or {}).get("result") == Result.OPEN]
+    if hand["attempt"] in granted:
+        row = get(work.session, AttemptRow, hand["attempt"], "attempt")
+        lifter = get(work.session, LifterRow, row.lifter_id, "lifter")
+        raise NotAllowedNow(hands_off(lifter.name, hand["weight"]))
 
 
 def _check_owners(work: Work, edits: Iterable[Edit]) -> None:

@@ -393,6 +393,24 @@ def test_a_remedy_is_taken_back_and_entered_again(hall: Hall, choice: int) -> No
     assert replayed(hall.journal()) == rows(hall.desk.engine)
 
 
+def test_a_granted_retake_is_not_taken_back_while_its_lifter_stands_under_the_bar(hall: Hall) -> None:
+    """Undo made the attempt a good lift again, and the loaded bar was taken from the lifter without a word."""
+    hall.rules(retake_place="at-once")
+    hall.lift(ADA, 1, Result.GOOD)
+    take(hall, ADA, LIGHTER, RETAKE)
+    hall.load()
+    told = (
+        "The bar is loaded for Ada Brook at 100. Nothing may change on it now; "
+        "take “bar is loaded” back first if it is a mistake."
+    )
+    with refused(hall, NotAllowedNow, told):
+        undo(hall.desk, hall.platform_id, None, who=WANDA)
+    bar_is_not_loaded(hall.desk, hall.platform_id, who=WANDA)
+    undo(hall.desk, hall.platform_id, None, who=WANDA)
+    assert hall.attempt(ADA, 1).result is Result.GOOD
+    assert hall.board().ask is True
+
+
 def test_the_words_of_a_remedy_stand_in_the_journal(hall: Hall) -> None:
     hall.lift(ADA, 1, Result.MISSED)
     take(hall, ADA, LIGHTER)
