@@ -1,6 +1,6 @@
 """Real rounds through the desk, in the order in which they would have been declared.
 
-    uv run python -m tests.benchmarks.replay ROUNDS.json [--wish plates,mass,…] [--every N] [--jobs N]
+    uv run python -m tests.benchmarks.replay ROUNDS.json [--wish "plates;mass;…"] [--every N] [--jobs N] [--keep FOLDER]
 
 Openers are known when the flight comes on; every other weight is handed in just after its lifter's lift before,
 when the crew already has the next change in its hands. What the crew then handled (the *rolling* plan) is laid beside
@@ -12,6 +12,7 @@ from __future__ import annotations
 
 import argparse
 import json
+import pickle
 import shutil
 import sys
 import tempfile
@@ -274,9 +275,20 @@ def say(line: str) -> None:
     print(line, flush=True)
 
 
-def _one(job: tuple[dict[str, Any], str, Path]) -> Replayed:
-    case, name, empty = job
-    return replay(case, WISHES[name], empty)
+Job = tuple[dict[str, Any], str, Path, Path | None]
+
+
+def _one(job: Job) -> Replayed:
+    """One case, or what an earlier run kept of it: all of them take long, and a run may be broken off."""
+    case, name, empty, keep = job
+    file = None if keep is None else keep / f"{list(WISHES).index(name)}-{case['case']}.pickle"
+    if file is not None and file.exists():
+        kept: Replayed = pickle.loads(file.read_bytes())
+        return kept
+    found = replay(case, WISHES[name], empty)
+    if file is not None:
+        file.write_bytes(pickle.dumps(found))
+    return found
 
 
 def main(arguments: Sequence[str] | None = None) -> int:
@@ -288,14 +300,19 @@ def main(arguments: Sequence[str] | None = None) -> int:
     reader.add_argument("--wish", default=";".join(WISHES), help="names, a semicolon between them")
     reader.add_argument("--every", type=int, default=1, help="take each Nth case only")
     reader.add_argument("--jobs", type=int, default=1)
+    reader.add_argument(
+        "--keep", type=Path, help="a folder for what is done, so that a broken-off run goes on"
+    )
     asked = reader.parse_args(arguments)
+    if asked.keep is not None:
+        asked.keep.mkdir(parents=True, exist_ok=True)
     cases = json.loads(asked.rounds.read_text(encoding="utf-8"))["cases"][:: asked.every]
     kept = True
     with tempfile.TemporaryDirectory() as folder, ProcessPoolExecutor(asked.jobs) as pool:
         empty = Path(folder) / "meet.db"
         upgrade(f"sqlite:///{empty}")
         for name in asked.wish.split(";"):
-            found = list(pool.map(_one, [(case, name, empty) for case in cases]))
+            found = list(pool.map(_one, [(case, name, empty, asked.keep) for case in cases]))
             unusable = [one for one in found if not one.weights]
             say(
                 f"{len(unusable)} cases cannot be lifted with this set: "
