@@ -9,10 +9,8 @@ from pathlib import Path
 import pytest
 
 from app.desk.check_data import check_file
-from app.desk.demo import make_demo
 from app.desk.entry import Desk
 from app.store.backup import copies, make_copy
-from app.store.migrate import PROJECT
 from tests.cast import Hall, open_desk, ready_meet
 from tests.desk.checks import rows
 from tests.durability.entering import enter
@@ -84,14 +82,13 @@ def test_only_so_many_are_kept_and_the_oldest_go_first_whatever_the_clock_says(
 
 
 def test_two_meets_share_a_stick_and_nothing_else_on_it_is_touched(
-    hall: Hall, empty_file: Path, stick: Path, tmp_path: Path
+    hall: Hall, demo_file: Path, stick: Path, tmp_path: Path
 ) -> None:
     photo = stick / "podium.jpg"
     photo.write_bytes(b"not ours")
     other = tmp_path / "other.db"
-    other.write_bytes(empty_file.read_bytes())
+    other.write_bytes(demo_file.read_bytes())
     desk = open_desk(other)
-    make_demo(desk, PROJECT / "demo_meet")
     for _ in range(3):
         make_copy(hall.desk.engine, stick, AT, keep=1)
         make_copy(desk.engine, stick, AT, keep=2)
